@@ -23,14 +23,42 @@ export interface NutrientDefinition {
 const define = <const T extends readonly NutrientDefinition[]>(list: T) => list
 
 export const nutrients = define([
-  { id: 'totalDigestibleNutrients', symbol: 'TDN', group: 'energy', unit: 'g/kg', percent: true, decimals: 1 },
+  {
+    id: 'totalDigestibleNutrients',
+    symbol: 'TDN',
+    group: 'energy',
+    unit: 'g/kg',
+    percent: true,
+    decimals: 1,
+  },
   { id: 'digestibleEnergy', symbol: 'DE', group: 'energy', unit: 'Mcal/kg', percent: false, decimals: 2 },
   { id: 'metabolizableEnergy', symbol: 'ME', group: 'energy', unit: 'Mcal/kg', percent: false, decimals: 2 },
-  { id: 'netEnergyMaintenance', symbol: 'NEm', group: 'energy', unit: 'Mcal/kg', percent: false, decimals: 2 },
+  {
+    id: 'netEnergyMaintenance',
+    symbol: 'NEm',
+    group: 'energy',
+    unit: 'Mcal/kg',
+    percent: false,
+    decimals: 2,
+  },
   { id: 'netEnergyGain', symbol: 'NEg', group: 'energy', unit: 'Mcal/kg', percent: false, decimals: 2 },
   { id: 'netEnergyLactation', symbol: 'NEl', group: 'energy', unit: 'Mcal/kg', percent: false, decimals: 2 },
-  { id: 'metabolizableEnergySwine', symbol: 'ME swine', group: 'energy', unit: 'Mcal/kg', percent: false, decimals: 2 },
-  { id: 'metabolizableEnergyPoultry', symbol: 'ME poultry', group: 'energy', unit: 'Mcal/kg', percent: false, decimals: 2 },
+  {
+    id: 'metabolizableEnergySwine',
+    symbol: 'ME swine',
+    group: 'energy',
+    unit: 'Mcal/kg',
+    percent: false,
+    decimals: 2,
+  },
+  {
+    id: 'metabolizableEnergyPoultry',
+    symbol: 'ME poultry',
+    group: 'energy',
+    unit: 'Mcal/kg',
+    percent: false,
+    decimals: 2,
+  },
   { id: 'crudeProtein', symbol: 'CP', group: 'protein', unit: 'g/kg', percent: true, decimals: 1 },
   { id: 'rumenUndegradedProtein', symbol: 'RUP', group: 'protein', unit: 'g/kg', percent: true, decimals: 1 },
   { id: 'crudeFiber', symbol: 'CF', group: 'fibre', unit: 'g/kg', percent: true, decimals: 1 },
@@ -60,17 +88,33 @@ export const nutrients = define([
   { id: 'vitaminE', symbol: 'vit. E', group: 'vitamin', unit: 'IU/kg', percent: false, decimals: 0 },
   { id: 'lysine', symbol: 'Lys', group: 'aminoAcid', unit: 'g/kg', percent: true, decimals: 2 },
   { id: 'methionine', symbol: 'Met', group: 'aminoAcid', unit: 'g/kg', percent: true, decimals: 2 },
-  { id: 'methionineCystine', symbol: 'Met+Cys', group: 'aminoAcid', unit: 'g/kg', percent: true, decimals: 2 },
+  {
+    id: 'methionineCystine',
+    symbol: 'Met+Cys',
+    group: 'aminoAcid',
+    unit: 'g/kg',
+    percent: true,
+    decimals: 2,
+  },
   { id: 'threonine', symbol: 'Thr', group: 'aminoAcid', unit: 'g/kg', percent: true, decimals: 2 },
   { id: 'tryptophan', symbol: 'Trp', group: 'aminoAcid', unit: 'g/kg', percent: true, decimals: 2 },
-  { id: 'availablePhosphorus', symbol: 'avail. P', group: 'mineral', unit: 'g/kg', percent: true, decimals: 2 },
+  {
+    id: 'availablePhosphorus',
+    symbol: 'avail. P',
+    group: 'mineral',
+    unit: 'g/kg',
+    percent: true,
+    decimals: 2,
+  },
 ])
 
 export type NutrientId = (typeof nutrients)[number]['id']
 
 export const nutrientIds = nutrients.map((nutrient) => nutrient.id) as [NutrientId, ...NutrientId[]]
 
-const byId = new Map<string, NutrientDefinition & { id: NutrientId }>(nutrients.map((nutrient) => [nutrient.id, nutrient]))
+const byId = new Map<string, NutrientDefinition & { id: NutrientId }>(
+  nutrients.map((nutrient) => [nutrient.id, nutrient]),
+)
 
 /** The definition of a nutrient. Throws a RangeError for an id that is not in the list. */
 export function nutrient(id: NutrientId): NutrientDefinition & { id: NutrientId } {
