@@ -1,0 +1,23 @@
+import vue from '@vitejs/plugin-vue'
+import { defineConfig } from 'vite'
+import vuetify from 'vite-plugin-vuetify'
+
+/** Where the API answers while developing; the development start sets both ports. */
+const apiOrigin = `http://127.0.0.1:${process.env.API_PORT ?? '8081'}`
+
+export default defineConfig({
+  plugins: [vue(), vuetify({ autoImport: true })],
+  server: {
+    host: '127.0.0.1',
+    port: Number(process.env.PORT ?? 8080),
+    strictPort: true,
+    proxy: { '/api': { target: apiOrigin, changeOrigin: false } },
+  },
+  build: {
+    outDir: 'dist',
+    emptyOutDir: true,
+    target: 'es2022',
+    // The sign-in page is measured by a test; the default warning speaks of uncompressed sizes.
+    chunkSizeWarningLimit: 1000,
+  },
+})
