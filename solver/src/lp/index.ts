@@ -1,1 +1,7 @@
 export * from './types'
+export { solveLinearProgram, DEFAULT_DEADLINE_MS } from './solve'
+export { checkOutcome, TOLERANCE, PROOF_TOLERANCE } from './certificate'
+export { secondOpinion, AGREEMENT } from './secondOpinion'
+export { findProblems } from './validate'
+export { configureHighs, loadHighs, highsIfLoaded, type HighsSource } from './engines/highsRuntime'
+export { releaseHighs } from './engines/highs'

@@ -88,6 +88,8 @@ export interface Certificate {
   proof?: number
   /** For an unbounded program: how much one step along the direction lowers the objective, relative. */
   descent?: number
+  /** The evidence is the engine's exhaustive search over whole numbers, which cannot be checked afterwards. */
+  bySearch?: boolean
   /** The names of the checks that failed, for logs and tests; empty when valid. */
   failures: string[]
 }
@@ -122,6 +124,8 @@ export interface InfeasibleOutcome extends Solved {
 
 export interface UnboundedOutcome extends Solved {
   status: 'unbounded'
+  /** Amounts, one per column, that meet every limit. */
+  point: number[]
   /** A direction, one entry per column, along which every limit keeps holding and the objective falls for ever. */
   direction: number[]
   certificate: Certificate

@@ -1,0 +1,88 @@
+import { checkOutcome } from './certificate'
+import { factorise, solveBasis, type Basis } from './kernel'
+import type { ScaledProgram } from './scaled'
+import type { ColumnResult, EngineName, LinearProgram, OptimalOutcome, RowResult } from './types'
+
+/** What an engine hands over for an optimum, still scaled. */
+export interface ScaledOptimum {
+  value: Float64Array
+  dual: Float64Array
+  basis: Basis
+}
+
+/** Rounding noise of a sum, as a share of its terms, below which a value is its bound. */
+const KERNEL_NOISE = 1e-12
+/** The same for values taken from an engine, relative to 1 + |value| in scaled terms. */
+const ENGINE_NOISE = 1e-9
+
+/**
+ * Turns an engine's optimum into an outcome in the caller's units with its certificate: first the basis solved
+ * again from the data, and only where that fails (too large, singular) the engine's own numbers.
+ */
+export function finishOptimum(
+  lp: LinearProgram,
+  scaled: ScaledProgram,
+  optimum: ScaledOptimum,
+  engine: EngineName,
+  milliseconds: number,
+): OptimalOutcome {
+  const kernel = factorise(scaled, optimum.basis)
+  if (kernel) {
+    const basic = solveBasis(scaled, optimum.basis, kernel)
+    const noise = basic.valueSize.map((size) => KERNEL_NOISE * size)
+    const outcome = unscale(lp, scaled, { ...basic, basis: optimum.basis }, noise, engine, milliseconds)
+    outcome.certificate = checkOutcome(lp, outcome)
+    if (outcome.certificate.valid) return outcome
+  }
+  const noise = optimum.value.map((value) => ENGINE_NOISE * (1 + Math.abs(value)))
+  const raw = unscale(lp, scaled, optimum, noise, engine, milliseconds)
+  raw.certificate = checkOutcome(lp, raw)
+  return raw
+}
+
+/** Undoes the scaling; values within rounding noise of a bound are set on it. */
+function unscale(
+  lp: LinearProgram,
+  scaled: ScaledProgram,
+  { value, dual, basis }: ScaledOptimum,
+  noise: Float64Array,
+  engine: EngineName,
+  milliseconds: number,
+): OptimalOutcome {
+  const n = scaled.numCols
+  const m = scaled.numRows
+  const amounts = new Float64Array(n)
+  for (let j = 0; j < n; j++) {
+    const { lower, upper } = lp.columns[j]!
+    const amount = value[j]! * scaled.colScale[j]!
+    const near = noise[j]! * scaled.colScale[j]!
+    amounts[j] = amount - lower <= near ? lower : upper - amount <= near ? upper : amount
+  }
+  const priced = new Float64Array(n)
+  const rows: RowResult[] = new Array<RowResult>(m)
+  for (let i = 0; i < m; i++) {
+    const price = basis.rows[i] === 'basic' ? 0 : (dual[i]! * scaled.rowScale[i]!) / scaled.costScale
+    let activity = 0
+    for (const [column, coefficient] of lp.rows[i]!.entries) {
+      activity += coefficient * amounts[column]!
+      priced[column]! += coefficient * price
+    }
+    rows[i] = { activity, dual: price, basis: basis.rows[i]! }
+  }
+  let objective = 0
+  const columns: ColumnResult[] = new Array<ColumnResult>(n)
+  for (let j = 0; j < n; j++) {
+    const { cost } = lp.columns[j]!
+    objective += cost * amounts[j]!
+    columns[j] = { value: amounts[j]!, reducedCost: cost - priced[j]!, basis: basis.columns[j]! }
+  }
+  return {
+    status: 'optimal',
+    objective,
+    columns,
+    rows,
+    certificate: { valid: false, tolerance: 0, failures: ['unchecked'] },
+    engine,
+    milliseconds,
+  }
+}
