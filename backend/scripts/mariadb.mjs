@@ -16,7 +16,7 @@ import { dirname, join } from 'node:path'
 import { setTimeout as delay } from 'node:timers/promises'
 import { findProgram } from './debian.mjs'
 import { freePort } from './ports.mjs'
-import { endProcess, processesWith, run } from './processes.mjs'
+import { endProcess, endWithUs, processesWith, run } from './processes.mjs'
 import { SetupError } from './say.mjs'
 
 /**
@@ -150,6 +150,7 @@ function launch(directory, data, settings, forTests) {
   ]
   // A session of its own, so that Ctrl-C in the terminal reaches us alone and the order of stopping is ours.
   const child = spawn(requiredProgram('mariadbd'), flags, { stdio: 'ignore', detached: true })
+  endWithUs(child)
   /** @type {Promise<number | null>} */
   const ended = new Promise((resolve) => {
     child.once('error', () => resolve(null))

@@ -3,6 +3,20 @@ import { readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
 import { setTimeout as delay } from 'node:timers/promises'
 import { projectRoot } from './paths.mjs'
 
+/** @type {Set<import('node:child_process').ChildProcess>} */
+const children = new Set()
+process.once('exit', () => children.forEach((child) => child.kill('SIGTERM')))
+
+/**
+ * Sees to it that a child is told to end when this process does, in whatever way that comes about short of a
+ * SIGKILL.
+ * @param {import('node:child_process').ChildProcess} child
+ */
+export function endWithUs(child) {
+  children.add(child)
+  child.once('exit', () => children.delete(child))
+}
+
 /**
  * Runs a command to its end.
  * @param {string} command
@@ -14,6 +28,7 @@ import { projectRoot } from './paths.mjs'
 export function run(command, args, { quiet = false, env = process.env, cwd = projectRoot } = {}) {
   return new Promise((resolve) => {
     const child = spawn(command, args, { cwd, env, stdio: quiet ? ['ignore', 'pipe', 'pipe'] : 'inherit' })
+    endWithUs(child)
     let output = ''
     child.stdout?.on('data', (chunk) => (output += chunk))
     child.stderr?.on('data', (chunk) => (output += chunk))
