@@ -87,16 +87,16 @@ export class HighsModel {
     this.model.changeColCost(column, cost)
   }
 
+  setCosts(costs: Float64Array): void {
+    if (costs.length > 0) this.model.changeColsCost({ kind: 'range', from: 0, to: costs.length - 1 }, costs)
+  }
+
   setColumnBounds(column: number, lower: number, upper: number): void {
     this.model.changeColBounds(column, lower, upper)
   }
 
   setRowBounds(row: number, lower: number, upper: number): void {
     this.model.changeRowBounds(row, lower, upper)
-  }
-
-  setCoefficient(row: number, column: number, value: number): void {
-    this.model.changeCoefficient(row, column, value)
   }
 
   setBasis(basis: Basis): void {

@@ -1,0 +1,144 @@
+import type { LinearProgram, LinearRow, OptimalOutcome, SideName } from '../lp/types'
+import { furthestLimit } from './face'
+import { KernelRanges } from './kernelRanges'
+import { isZeroPrice } from './optimum'
+import type { AnalysisOptions, MarginalPrice } from './types'
+import { inWorkspace, positions, settled, sidesOf, type Workspace } from './workspace'
+
+type Direction = 1 | -1
+type Move = { price: number; to: number } | 'impossible'
+
+/** Relative difference beyond which two prices are two. */
+const SAME = 1e-9
+
+/**
+ * What each limit costs, exactly and both ways: the one-sided derivatives of the least cost with respect to the
+ * limit of the row as written (cost per unit of the row), and the values of the limit between which they hold. One
+ * entry per row and side; an equality is one side (`equal`) whose two ends move together. A limit that is not
+ * binding costs nothing until it meets the mix.
+ *
+ * At an optimum whose prices are the only ones they come from its factorised basis; else each is the least cost of
+ * leaving the optimum in that direction, a small linear program of its own. No step size is involved.
+ *
+ * Throws `AnalysisStopped` when the time is up, `Error` on an unknown row.
+ */
+export function marginalPrices(
+  lp: LinearProgram,
+  optimal: OptimalOutcome,
+  options: AnalysisOptions & { rows?: string[] } = {},
+): Promise<MarginalPrice[]> {
+  return inWorkspace(lp, optimal, options, async (workspace, until) => {
+    const rows = options.rows ? positions(lp.rows, options.rows, 'row') : lp.rows.map((_, i) => i)
+    const { kernel, pricesUnique, amountsUnique } = workspace.optimum
+    const ranges =
+      kernel && pricesUnique && amountsUnique ? new KernelRanges(workspace.optimum, kernel) : null
+    const prices: MarginalPrice[] = []
+    for (const i of rows)
+      for (const { side } of sidesOf(lp.rows[i]!)) {
+        const ask = new Ask(workspace, i, side, until)
+        prices.push(ranges ? ask.fromKernel(ranges) : await ask.bySolving())
+      }
+    return prices
+  })
+}
+
+/** One question: the prices of one side of one row. */
+class Ask {
+  private readonly row: LinearRow
+  private readonly limit: number
+  private readonly activity: number
+  private readonly touched: boolean
+
+  constructor(
+    private readonly workspace: Workspace,
+    private readonly i: number,
+    private readonly side: SideName,
+    private readonly until: number,
+  ) {
+    const { lp, outcome, rowAtLower, rowAtUpper } = workspace.optimum
+    this.row = lp.rows[i]!
+    this.limit = side === 'upper' ? this.row.upper : this.row.lower
+    this.activity = outcome.rows[i]!.activity
+    this.touched = (side === 'upper' ? rowAtUpper[i] : rowAtLower[i]) === 1
+  }
+
+  fromKernel(ranges: KernelRanges): MarginalPrice {
+    const range = this.touched ? ranges.of(this.i, this.limit) : null
+    if (!range) return this.slack(this.activity)
+    const price = this.workspace.optimum.outcome.rows[this.i]!.dual
+    const { lower, upper } = this.row
+    const upTo = this.side === 'lower' ? Math.min(range.upTo, upper) : range.upTo
+    const downTo = this.side === 'upper' ? Math.max(range.downTo, lower) : range.downTo
+    return this.answer({ price, to: upTo }, { price, to: downTo })
+  }
+
+  async bySolving(): Promise<MarginalPrice> {
+    if (this.touched) return this.answer(await this.move(1), await this.move(-1))
+    const { optimum } = this.workspace
+    if (optimum.amountsUnique) return this.slack(this.activity)
+    const duals = optimum.outcome.rows.map((row) => row.dual)
+    return this.slack(await this.reach(duals, this.side === 'lower' ? 1 : -1, this.activity))
+  }
+
+  /** A limit away from the mix costs nothing until it reaches `meets`, and nothing the other way. */
+  private slack(meets: number): MarginalPrice {
+    const up = this.side === 'lower' ? meets : Infinity
+    const down = this.side === 'lower' ? -Infinity : meets
+    return this.answer({ price: 0, to: up }, { price: 0, to: down })
+  }
+
+  /** The exact price of moving the touched limit one way, and how far it holds. */
+  private async move(direction: Direction): Promise<Move> {
+    const { optimum } = this.workspace
+    let price: number
+    let duals: number[]
+    if (optimum.pricesUnique) {
+      duals = optimum.outcome.rows.map((row) => row.dual)
+      price = duals[this.i]!
+    } else {
+      const cone = await this.workspace.cone()
+      const step = direction * cone.rowUnit(this.i)
+      const { lower, upper } = cone.lp.rows[this.i]!
+      cone.setRowBounds(this.i, this.side === 'upper' ? lower : step, this.side === 'lower' ? upper : step)
+      const crossed = cone.lp.rows[this.i]!.lower > cone.lp.rows[this.i]!.upper
+      const outcome = crossed ? null : settled(cone.solve(this.until))
+      cone.setRowBounds(this.i, lower, upper)
+      if (outcome?.status !== 'optimal') return 'impossible'
+      price = outcome.objective / step
+      duals = outcome.rows.map((row) => row.dual)
+    }
+    if (isZeroPrice(optimum.scaled, price, this.i)) {
+      // Loosening a limit that costs nothing never begins to: the least cost is convex in it and cannot fall.
+      if (this.side === 'lower' && direction < 0) return { price: 0, to: -Infinity }
+      if (this.side === 'upper' && direction > 0) return { price: 0, to: Infinity }
+      price = 0
+    }
+    return { price, to: await this.reach(duals, direction, this.limit) }
+  }
+
+  private async reach(duals: number[], direction: Direction, from: number): Promise<number> {
+    const { lower, upper } = this.row
+    const open = direction * Infinity
+    const other =
+      this.side === 'lower' && direction > 0 ? upper : this.side === 'upper' && direction < 0 ? lower : open
+    const face = await this.workspace.face()
+    return furthestLimit(face, this.workspace.optimum, duals, this.i, from, other, direction, this.until)
+  }
+
+  private answer(more: Move, less: Move): MarginalPrice {
+    const same =
+      more !== 'impossible' &&
+      less !== 'impossible' &&
+      Math.abs(more.price - less.price) <= SAME * Math.max(Math.abs(more.price), Math.abs(less.price))
+    return {
+      row: this.row.id,
+      side: this.side,
+      limit: this.limit,
+      activity: this.activity,
+      binding: this.touched,
+      more: more === 'impossible' ? more : { price: more.price, upTo: more.to },
+      less: less === 'impossible' ? less : { price: less.price, downTo: less.to },
+      differs: !same,
+    }
+  }
+}
