@@ -36,7 +36,7 @@ export async function buildBackend() {
   const digest = digestOf(sources)
   if (isBuiltFrom(outDirectory, digest)) return
   const start = performance.now()
-  const { build } = await import('esbuild')
+  const { build, stop } = await import('esbuild')
   try {
     await build({
       entryPoints: {
@@ -55,6 +55,8 @@ export async function buildBackend() {
     })
   } catch (error) {
     throw new SetupError('The server could not be built; the compiler said why above.', String(error))
+  } finally {
+    await stop()
   }
   noteBuiltFrom(outDirectory, digest)
   say(`Built the server in ${secondsSince(start)}.`)
