@@ -1,0 +1,15 @@
+export default {
+  kg: 'kg',
+  g: 'g',
+  lb: 'lb',
+  oz: 'oz',
+  cwt: 'cwt',
+  shortTon: 'short ton',
+  tonne: 'tonne',
+  bushel: 'bu',
+  us: 'US customary (lb, bu, short ton)',
+  metric: 'Metric (kg, tonne)',
+  ofDryMatter: '{text} of DM',
+  onDryMatter: '{text} DM',
+  perHeadDay: '{text} a head and day',
+} as const
