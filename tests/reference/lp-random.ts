@@ -62,21 +62,40 @@ export function randomMix(seed: number, family: Family): LinearProgram {
     else rows.push({ id: `window ${i}`, lower: supply * (1 - slack), upper: supply * (1 + slack), entries })
   }
 
-  if (family === 'infeasible') {
-    const content = columns.map(() => between(1, 2))
-    rows.push({
-      id: 'out of reach',
-      lower: total * between(2.001, 3),
-      upper: Infinity,
-      entries: content.map((value, j): [number, number] => [j, value]),
-    })
-  }
+  if (family === 'infeasible') addConflict(rows, feeds, total, 1 + (seed % 3), between)
   if (family === 'bounded')
     columns.forEach((column, j) => {
       if (random() < 0.5) column.upper = amounts[j]! + total * between(0, 0.2)
       if (random() < 0.2) column.lower = amounts[j]! * between(0, 0.9)
     })
   return { columns, rows }
+}
+
+/** Adds limits that cannot hold together: one out of reach of every feed, or two or three at odds with each other. */
+function addConflict(
+  rows: LinearProgram['rows'],
+  feeds: number,
+  total: number,
+  members: number,
+  between: (low: number, high: number) => number,
+): void {
+  const content = () => Array.from({ length: feeds }, () => between(1, 2))
+  const entries = (values: number[]) => values.map((value, j): [number, number] => [j, value])
+  const reach = members === 1 ? between(2.001, 3) : between(1.2, 1.5)
+  const first = content()
+  rows.push({ id: 'high first', lower: reach * total, upper: Infinity, entries: entries(first) })
+  if (members === 1) return
+  const second = members === 3 ? content() : first.map(() => 0)
+  const also = members === 3 ? between(1.2, 1.5) : 0
+  if (members === 3)
+    rows.push({ id: 'high second', lower: also * total, upper: Infinity, entries: entries(second) })
+  const both = first.map((value, j) => value + second[j]! + between(0, 0.2))
+  rows.push({
+    id: 'low both',
+    lower: -Infinity,
+    upper: (reach + also) * total * between(0.9, 0.99),
+    entries: entries(both),
+  })
 }
 
 /** The first `count` problems: every family in turn. */

@@ -87,8 +87,10 @@ export interface Loosening {
   moves: LooseningMove[]
   /** Σ weight · by. */
   total: number
-  /** Amounts, one per column, that meet the loosened limits; empty when impossible. */
+  /** Amounts, one per column, of the cheapest mix within the loosened limits; empty when impossible. */
   amounts: number[]
+  /** Its cost; null when impossible, or where no cheapest exists. */
+  objective: number | null
 }
 
 /** What a curve runs along: the cost of a column or the limit of a row. */
