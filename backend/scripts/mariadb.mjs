@@ -41,6 +41,11 @@ const account = 'maslin'
 const database = 'maslin'
 const readyWithinMs = 180_000
 const stopWithinMs = 60_000
+/**
+ * Less for a server that is nobody's child: MariaDB hangs on a SIGTERM that comes while it starts, and its data
+ * are safe against a SIGKILL.
+ */
+const leftoverStopWithinMs = 15_000
 /** The longest path a Unix socket may have (sun_path, less its closing zero). */
 const longestSocketPath = 107
 
@@ -76,11 +81,11 @@ export async function startMariaDb({ directory, preferredPort = 3307, forTests =
 
 /**
  * Starts the server and starts it again, on the same port and data, whenever it ends without being asked to.
- * @param {MariaDbOptions & { onRestart?: () => void, onGivenUp: (error: unknown) => void }} options
- *   onGivenUp: it ended for the fourth time within a minute, or would not start again
+ * @param {MariaDbOptions & { onRestart?: () => void, onBack?: () => void, onGivenUp: (error: unknown) => void }} options
+ *   onRestart: it has ended and is started again; onBack: it answers again; onGivenUp: it ended for the fourth time within a minute, or would not start again
  * @returns {Promise<{ url: string, port: number, pid: () => number, stop: () => Promise<void> }>}
  */
-export async function keepMariaDb({ onRestart, onGivenUp, ...options }) {
+export async function keepMariaDb({ onRestart, onBack, onGivenUp, ...options }) {
   let server = await startMariaDb(options)
   let restarting = Promise.resolve()
   let stopping = false
@@ -101,6 +106,7 @@ export async function keepMariaDb({ onRestart, onGivenUp, ...options }) {
     onRestart?.()
     server = await startMariaDb({ ...options, preferredPort: server.port })
     watch()
+    onBack?.()
   }
   watch()
   return {
@@ -233,7 +239,8 @@ async function createData(data) {
  * @param {string} data
  */
 async function endServersOn(data) {
-  for (const pid of processesWith('mariadbd', `--datadir=${data} `)) await endProcess(pid, stopWithinMs)
+  for (const pid of processesWith('mariadbd', `--datadir=${data} `))
+    await endProcess(pid, leftoverStopWithinMs)
 }
 
 /**

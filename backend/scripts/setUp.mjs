@@ -32,12 +32,15 @@ export async function setUp(lifecycle) {
 async function startDatabase(directory, lifecycle) {
   await ensurePrograms('mariadb', 'mariadbClient')
   const start = performance.now()
-  const database = await keepMariaDb({
+  const starting = keepMariaDb({
     directory: join(directory, 'mariadb'),
     onRestart: () => say('MariaDB ended unexpectedly; starting it again …'),
+    onBack: () => say('MariaDB is back.'),
     onGivenUp: (error) => void lifecycle.fail(error),
   })
-  lifecycle.onEnd(() => database.stop())
+  // Also when asked to end while it still starts: it is not left behind.
+  lifecycle.onEnd(async () => (await starting.catch(() => undefined))?.stop())
+  const database = await starting
   say(`MariaDB runs on 127.0.0.1:${database.port}, started in ${secondsSince(start)}.`)
   return database.url
 }
