@@ -26,7 +26,7 @@ try {
       '--clear-screen=false',
       inProject('backend/src/server.ts'),
     ],
-    env: { NODE_ENV: 'development', ...env },
+    env: { NODE_ENV: 'development', ...env, HOST: '127.0.0.1' },
     toStdout: true,
   })
   lifecycle.onEnd(server.stop)
@@ -38,7 +38,13 @@ try {
   const pages = await createServer({
     root: inProject('frontend'),
     configFile: inProject('frontend/vite.config.ts'),
-    server: { host: '127.0.0.1', port, strictPort: true, proxy: { '/api': `http://127.0.0.1:${apiPort}` } },
+    server: {
+      host: process.env.HOST || '127.0.0.1',
+      port,
+      strictPort: true,
+      // The Host header stays as the browser sent it: the server compares it with the Origin of every change.
+      proxy: { '/api': { target: `http://127.0.0.1:${apiPort}`, changeOrigin: false } },
+    },
   })
   lifecycle.onEnd(() => pages.close())
   await pages.listen()

@@ -76,6 +76,7 @@ export function startServer({
   endWithUs(child)
   if (typeof output === 'number') closeSync(output)
   notePid(join(directory, 'server.pid'), child.pid)
+  const host = ownAddress(env.HOST ?? process.env.HOST)
   let gone = false
   /** @type {Promise<void>} */
   const ended = new Promise((resolve) => {
@@ -97,7 +98,7 @@ export function startServer({
     ready: async () => {
       for (const end = Date.now() + readyWithinMs; Date.now() < end; await delay(100)) {
         if (gone) throw new SetupError(`The server did not start. ${why()}`)
-        if (await isReady(port)) return
+        if (await isReady(host, port)) return
       }
       throw new SetupError(`The server did not become ready within ${readyWithinMs / 1000} s. ${why()}`)
     },
@@ -111,10 +112,22 @@ export function startServer({
   }
 }
 
-/** @param {number} port */
-async function isReady(port) {
+/**
+ * Where the server is reached from this machine.
+ * @param {string | undefined} host the address it listens on
+ */
+function ownAddress(host) {
+  if (!host || host === '0.0.0.0' || host === '::') return '127.0.0.1'
+  return host.includes(':') ? `[${host}]` : host
+}
+
+/**
+ * @param {string} host
+ * @param {number} port
+ */
+async function isReady(host, port) {
   try {
-    const answer = await fetch(`http://127.0.0.1:${port}/api/v1/ready`, { signal: AbortSignal.timeout(5000) })
+    const answer = await fetch(`http://${host}:${port}/api/v1/ready`, { signal: AbortSignal.timeout(5000) })
     await answer.body?.cancel()
     return answer.ok
   } catch {

@@ -9,7 +9,7 @@ import { say } from './say.mjs'
  * @param {string} directory Maslin's data directory
  */
 export function printAddress(port, directory) {
-  say(`\nMaslin is running at  http://localhost:${port}\n`)
+  say(`\nMaslin is running at  ${process.env.PUBLIC_URL || `http://localhost:${port}`}\n`)
   const signIns = demoSignIns(directory)
   if (signIns.length === 0) return
   say('Sign in to the demo farm as')
