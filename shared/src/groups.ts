@@ -53,6 +53,8 @@ export const requirementNoteCodes = [
   'derivedEnergy',
   'otherStage',
   'noRow',
+  'tableGain',
+  'sumOfRows',
 ] as const
 
 export const requirementSchema = z.object({

@@ -1,2 +1,3 @@
 export * from './lp'
 export * from './analysis'
+export * from './nutrition'
