@@ -1,3 +1,4 @@
 export * from './lp'
 export * from './analysis'
 export * from './nutrition'
+export * from './formulation'

@@ -1,0 +1,75 @@
+import type { Caution, FormulationInput, LeftOut } from '@maslin/shared'
+import { animalRules, copperCaution, type FirstMixDefaults } from '../nutrition'
+import { eatenOf, knowledgeOf } from './diet'
+import type { Formulation } from './program'
+
+/** mg copper per kg of the whole diet's dry matter, sheep. */
+const copperThresholds: FirstMixDefaults['copper'] = {
+  warnAbove: {
+    value: 10,
+    basis: 'mg copper per kg of diet dry matter',
+    source: 'Common practice, no source where molybdenum is about 1 mg/kg',
+    status: 'practice',
+  },
+  stopAbove: {
+    value: 15,
+    basis: 'mg copper per kg of diet dry matter',
+    source:
+      'Greatest safe dietary copper of sheep, In Practice 1997, 19:503; NRC 2005 Mineral Tolerance of Animals',
+    status: 'read',
+  },
+}
+
+/** Base-diet feeds the animals eat with this mix; a batch is the whole feed. */
+function baseFeedsOf(input: FormulationInput): FormulationInput['baseFeeds'] {
+  if (input.basis === 'batch') return []
+  return input.baseFeeds.filter((feed) => input.baseDiet.some((item) => item.feedId === feed.id))
+}
+
+/** Feeds that the animal rules keep out of this mix, and what they warn of before anything is solved. */
+export function rulesOf(input: FormulationInput): { excluded: LeftOut[]; cautions: Caution[] } {
+  const { leftOut, cautions } = animalRules(input.group, input.feeds, baseFeedsOf(input))
+  const prices = new Map(input.feeds.map((feed) => [feed.id, feed.pricePerKg]))
+  const excluded = leftOut.map(({ feedId, reason }): LeftOut => {
+    const pricePerKg = prices.get(feedId)
+    return { feedId, reason, ...(pricePerKg === undefined ? {} : { pricePerKg }) }
+  })
+  return { excluded, cautions }
+}
+
+/** What to warn of at an answer: the animal rules for what is in it or was kept out, and the copper of the diet. */
+export function cautionsOf(formulation: Formulation, amounts: number[]): Caution[] {
+  const { input, excluded } = formulation
+  const eaten = eatenOf(formulation.diet, 'diet', amounts).filter(({ dryMatterKg }) => dryMatterKg > 0)
+  const concerned = new Set([
+    ...eaten.map(({ source }) => source.feed.id),
+    ...excluded.map((out) => out.feedId),
+  ])
+  const { cautions } = animalRules(
+    input.group,
+    input.feeds.filter((feed) => concerned.has(feed.id)),
+    baseFeedsOf(input),
+  )
+  const copper = copperOf(formulation, amounts)
+  return copper ? [...cautions, copper] : cautions
+}
+
+function copperOf({ input, diet, composition }: Formulation, amounts: number[]): Caution | undefined {
+  const eaten = eatenOf(diet, 'diet', amounts).filter(({ dryMatterKg }) => dryMatterKg > 0)
+  const dryMatter = eaten.reduce((sum, part) => sum + part.dryMatterKg, 0)
+  if (dryMatter === 0) return undefined
+  const { total, assumed, unknownFeeds } = knowledgeOf(eaten, (feed) => composition(feed, 'copper', 'high'))
+  const largest = [...eaten].sort((a, b) => brought(b) - brought(a))[0]!
+  function brought({ source, dryMatterKg }: (typeof eaten)[number]): number {
+    return composition(source.feed, 'copper', 'high').value * dryMatterKg
+  }
+  const known = eaten.flatMap(({ source }) => source.feed.values.copper ?? [])
+  const tested = known.length > 0 && known.every(({ status }) => status === 'laboratory')
+  return copperCaution(copperThresholds, {
+    species: input.group.species,
+    totalPerKg: total / dryMatter,
+    assumedShare: total > 0 ? assumed / total : 0,
+    origin: tested ? 'tested' : 'book',
+    feedIds: [...new Set([...unknownFeeds, largest.source.feed.id])],
+  }).caution
+}

@@ -1,0 +1,48 @@
+import type { FormulationInput, NutrientId, SolverFeed } from '@maslin/shared'
+
+/** Which end of a feed's value a row counts: the one that is unsafe for the row. */
+export type End = 'low' | 'high'
+
+/** A feed's content of a nutrient as a row counts it, per kg of dry matter in the nutrient's unit. */
+export interface Counted {
+  value: number
+  /** Nothing is known of it: the low end counts it as zero, the high end takes an assumed value. */
+  unknown: boolean
+}
+
+/** Reads contents of feeds; the same for every row of a program. */
+export type Composition = (feed: SolverFeed, nutrient: NutrientId, end: End) => Counted
+
+/**
+ * How contents are counted: a known value as it is, an interval at the end asked for, an unknown one as zero at the
+ * low end and as the assumed high value at the high end (of the feed's class, else of the whole library, else the
+ * highest known among the feeds at hand; where not even that exists zero, and the limit cannot be checked).
+ */
+export function compositionOf(input: FormulationInput): Composition {
+  const highestKnown = new Map<NutrientId, number>()
+  const highestOf = (nutrient: NutrientId): number => {
+    const known = highestKnown.get(nutrient)
+    if (known !== undefined) return known
+    let highest = 0
+    for (const feed of [...input.feeds, ...input.baseFeeds]) {
+      const entry = feed.values[nutrient]
+      if (entry) highest = Math.max(highest, entry.value, entry.high ?? 0)
+    }
+    highestKnown.set(nutrient, highest)
+    return highest
+  }
+  return (feed, nutrient, end) => {
+    const known = feed.values[nutrient]
+    if (known)
+      return {
+        value:
+          end === 'low'
+            ? Math.min(known.value, known.low ?? known.value)
+            : Math.max(known.value, known.high ?? known.value),
+        unknown: false,
+      }
+    if (end === 'low') return { value: 0, unknown: true }
+    const assumed = input.assumedHighs[feed.class]?.[nutrient] ?? input.assumedHighs.any?.[nutrient]
+    return { value: Math.max(0, assumed?.value ?? highestOf(nutrient)), unknown: true }
+  }
+}

@@ -1,0 +1,108 @@
+import type { BlendPart, LeftOut } from '@maslin/shared'
+import { buyInCosts, costWindows, type AnalysisSession } from '../analysis'
+import type { LinearProgram, OptimalOutcome, Outcome } from '../lp'
+import type { Deadline } from './deadline'
+import type { Formulation } from './program'
+import { blendOf } from './report'
+
+/** Steps below a buy-in price, as a share of the prices around, at which the mix that then results is looked at. */
+const JUST_BELOW = [1e-5, 1e-4, 1e-3]
+
+export interface PriceContext {
+  formulation: Formulation
+  optimal: OptimalOutcome
+  session: AnalysisSession
+  deadline: Deadline
+  solve: (lp: LinearProgram) => Promise<Outcome>
+}
+
+/** The blend with the range of each feed's price, currency per kg as fed, in which it stays the very same blend. */
+export async function withWindows(context: PriceContext, blend: BlendPart[]): Promise<BlendPart[]> {
+  const { formulation, optimal, session, deadline } = context
+  const windows = await costWindows(formulation.program, optimal, {
+    session,
+    deadlineMs: deadline.left(),
+    columns: blend.map((part) => part.feedId),
+  })
+  const byFeed = new Map(windows.map((window) => [window.column, window]))
+  return blend.map((part) => {
+    const window = byFeed.get(part.feedId)
+    if (!window) return part
+    return {
+      ...part,
+      priceWindow: {
+        // No price is negative: a window that reaches zero has no lower end.
+        ...(window.lower > 0 ? { low: Math.min(window.lower, part.pricePerKg) } : {}),
+        ...(Number.isFinite(window.upper) ? { high: Math.max(window.upper, part.pricePerKg) } : {}),
+      },
+    }
+  })
+}
+
+/**
+ * Priced feeds that the cheapest mix leaves out: the price per kg as fed below which each comes in, the share as fed
+ * it then takes, and the feed that gives up most of its share for it (the mix is solved again just below that price).
+ * Nearest to coming in first.
+ */
+export async function leftOutByPrice(context: PriceContext, blend: BlendPart[]): Promise<LeftOut[]> {
+  const { formulation, optimal, session, deadline } = context
+  const used = new Set(blend.map((part) => part.feedId))
+  const columns = formulation.diet.mix.map(({ feed }) => feed.id).filter((id) => !used.has(id))
+  if (columns.length === 0) return []
+  const entries = await buyInCosts(formulation.program, optimal, {
+    session,
+    deadlineMs: deadline.left(),
+    columns,
+  })
+  const leftOut: LeftOut[] = []
+  for (const { column, cost, entersBelow } of entries) {
+    const entry: LeftOut = { feedId: column, reason: 'price', pricePerKg: cost }
+    if (entersBelow !== null && entersBelow > 0) {
+      entry.buyInPrice = Math.min(entersBelow, cost)
+      Object.assign(entry, await enteringAt(context, blend, column, entry.buyInPrice))
+    }
+    leftOut.push(entry)
+  }
+  return leftOut.sort((a, b) => distance(a) - distance(b) || a.feedId.localeCompare(b.feedId))
+}
+
+const distance = ({ pricePerKg = 0, buyInPrice }: LeftOut): number =>
+  buyInPrice === undefined ? Infinity : pricePerKg / buyInPrice
+
+async function enteringAt(
+  { formulation, deadline, solve }: PriceContext,
+  blend: BlendPart[],
+  feedId: string,
+  price: number,
+): Promise<Pick<LeftOut, 'thenShareAsFed' | 'replaces'>> {
+  const { program, diet } = formulation
+  const column = diet.mix.find(({ feed }) => feed.id === feedId)!.column
+  for (const step of JUST_BELOW) {
+    deadline.left()
+    const columns = [...program.columns]
+    columns[column] = { ...columns[column]!, cost: price * (1 - step) }
+    const outcome = await solve({ columns, rows: program.rows })
+    if (outcome.status !== 'optimal') return {}
+    const then = blendOf(
+      formulation,
+      outcome.columns.map(({ value }) => value),
+    )
+    const entered = then.find((part) => part.feedId === feedId)
+    if (!entered) continue
+    return { thenShareAsFed: entered.shareAsFed, ...mostReplaced(blend, then) }
+  }
+  return {}
+}
+
+function mostReplaced(before: BlendPart[], then: BlendPart[]): Pick<LeftOut, 'replaces'> {
+  const after = new Map(then.map((part) => [part.feedId, part.shareAsFed]))
+  let most = 1e-9
+  let replaces: string | undefined
+  for (const { feedId, shareAsFed } of before) {
+    const fall = shareAsFed - (after.get(feedId) ?? 0)
+    if (fall <= most) continue
+    most = fall
+    replaces = feedId
+  }
+  return replaces === undefined ? {} : { replaces }
+}
