@@ -1,0 +1,31 @@
+import express, { Router, type RequestHandler } from 'express'
+import { existsSync } from 'node:fs'
+import { join } from 'node:path'
+
+/**
+ * Serves the built pages. Files with a hash in their name never change and are kept for a year; the page itself is
+ * asked for each time, so that a new build shows at once. Addresses of pages all answer with it.
+ */
+export function serveFrontend(directory: string): Router {
+  const page = join(directory, 'index.html')
+  const router = Router()
+  router.use(
+    '/assets',
+    express.static(join(directory, 'assets'), {
+      immutable: true,
+      maxAge: '365d',
+      index: false,
+      fallthrough: true,
+    }),
+    // A file of an older build is gone: answering with the page would be taken for a script.
+    (_request, _response, next) => next('router'),
+  )
+  router.use(express.static(directory, { index: false, maxAge: '1h' }))
+  const sendPage: RequestHandler = (_request, response, next) => {
+    if (!existsSync(page)) return next()
+    response.setHeader('Cache-Control', 'no-store')
+    response.sendFile(page)
+  }
+  router.get('/{*path}', sendPage)
+  return router
+}
