@@ -94,7 +94,8 @@ export function lookUpRequirement(
       return undefined
   }
   applyEquation(draft, stage, animal, tables)
-  if (draft.dailyGainG !== undefined && !stage.asks.includes('dailyGainG')) {
+  const grows = stage.phase === 'growing' || stage.phase === 'finishing'
+  if (grows && draft.dailyGainG !== undefined && !stage.asks.includes('dailyGainG')) {
     draft.notes.push({ code: 'tableGain', params: { gainG: Math.round(draft.dailyGainG) } })
   }
   return finish(draft, stage, tables)
