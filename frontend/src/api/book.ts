@@ -1,11 +1,7 @@
-import { bookFeedSchema, pageOf, stageSchema, type BookFeed, type Stage } from '@maslin/shared'
-import { get } from './client'
-
-const bookFeedsSchema = pageOf(bookFeedSchema)
-const stagesSchema = pageOf(stageSchema)
+import { bookFeedSchema, stageSchema, type BookFeed, type Stage } from '@maslin/shared'
+import { getAll } from './client'
 
 /** The book's feeds, which every farm may copy. */
-export const fetchBookFeeds = async (): Promise<BookFeed[]> =>
-  (await get('/book/feeds', bookFeedsSchema)).items
+export const fetchBookFeeds = (): Promise<BookFeed[]> => getAll('/book/feeds', bookFeedSchema)
 /** The stages the requirement tables know. */
-export const fetchStages = async (): Promise<Stage[]> => (await get('/book/stages', stagesSchema)).items
+export const fetchStages = (): Promise<Stage[]> => getAll('/book/stages', stageSchema)

@@ -1,4 +1,4 @@
-import { problemSchema, type FieldProblem, type ProblemCode } from '@maslin/shared'
+import { pageOf, problemSchema, type FieldProblem, type ProblemCode } from '@maslin/shared'
 import type { z } from 'zod'
 import { refreshSession } from './refresh'
 
@@ -154,6 +154,24 @@ export async function requestNothing(
 
 export const get = <S extends z.ZodType>(path: string, schema: S, options?: RequestOptions) =>
   request('GET', path, schema, options)
+/** Every item of a cursor-paged list, page after page. */
+export async function getAll<S extends z.ZodType>(
+  path: string,
+  item: S,
+  query: RequestOptions['query'] = {},
+): Promise<z.output<S>[]> {
+  const page = pageOf(item)
+  const items: z.output<S>[] = []
+  let cursor: string | undefined
+  do {
+    const answer: { items: z.output<S>[]; nextCursor?: string } = await get(path, page, {
+      query: { ...query, cursor },
+    })
+    items.push(...answer.items)
+    cursor = answer.nextCursor
+  } while (cursor)
+  return items
+}
 export const post = <S extends z.ZodType>(path: string, schema: S, body: unknown, options?: RequestOptions) =>
   request('POST', path, schema, { ...options, body })
 export const patch = <S extends z.ZodType>(

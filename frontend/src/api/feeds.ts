@@ -1,21 +1,19 @@
 import {
   feedSchema,
   feedSummarySchema,
-  pageOf,
   type Feed,
   type FeedCreate,
   type FeedSummary,
   type FeedUpdate,
 } from '@maslin/shared'
 import { z } from 'zod'
-import { get, patch, post, remove } from './client'
+import { get, getAll, patch, post, remove } from './client'
 
-const feedsSchema = pageOf(feedSummarySchema)
 const copiedSchema = z.object({ items: z.array(feedSchema), skipped: z.array(z.string()) })
 
 /** The farm's feeds, those put away included, each with its cheapest price on the day (absent: today). */
-export const fetchFeeds = async (farmId: string, asOf?: string): Promise<FeedSummary[]> =>
-  (await get(`/farms/${farmId}/feeds`, feedsSchema, { query: { asOf, limit: 500 } })).items
+export const fetchFeeds = (farmId: string, asOf?: string): Promise<FeedSummary[]> =>
+  getAll(`/farms/${farmId}/feeds`, feedSummarySchema, { asOf })
 export const fetchFeed = (farmId: string, feedId: string): Promise<Feed> =>
   get(`/farms/${farmId}/feeds/${feedId}`, feedSchema)
 export const createFeed = (farmId: string, body: FeedCreate): Promise<Feed> =>

@@ -1,6 +1,5 @@
 import {
   groupSchema,
-  pageOf,
   requirementSchema,
   type Animal,
   type Group,
@@ -9,13 +8,12 @@ import {
   type Requirement,
 } from '@maslin/shared'
 import { z } from 'zod'
-import { get, patch, post, remove } from './client'
+import { get, getAll, patch, post, remove } from './client'
 
-const groupsSchema = pageOf(groupSchema)
 const answerSchema = z.object({ requirement: requirementSchema.optional() })
 
-export const fetchGroups = async (farmId: string): Promise<Group[]> =>
-  (await get(`/farms/${farmId}/groups`, groupsSchema, { query: { limit: 500 } })).items
+export const fetchGroups = (farmId: string): Promise<Group[]> =>
+  getAll(`/farms/${farmId}/groups`, groupSchema)
 export const fetchGroup = (farmId: string, groupId: string): Promise<Group> =>
   get(`/farms/${farmId}/groups/${groupId}`, groupSchema)
 export const createGroup = (farmId: string, body: GroupCreate): Promise<Group> =>

@@ -1,10 +1,8 @@
-import { memberSchema, pageOf, type Member, type MemberCreate, type Role } from '@maslin/shared'
-import { get, patch, post, remove } from './client'
+import { memberSchema, type Member, type MemberCreate, type Role } from '@maslin/shared'
+import { getAll, patch, post, remove } from './client'
 
-const membersSchema = pageOf(memberSchema)
-
-export const fetchMembers = async (farmId: string): Promise<Member[]> =>
-  (await get(`/farms/${farmId}/members`, membersSchema)).items
+export const fetchMembers = (farmId: string): Promise<Member[]> =>
+  getAll(`/farms/${farmId}/members`, memberSchema)
 export const addMember = (farmId: string, body: MemberCreate): Promise<Member> =>
   post(`/farms/${farmId}/members`, memberSchema, body)
 export const changeRole = (farmId: string, memberId: string, role: Role, version: number): Promise<Member> =>

@@ -1,6 +1,5 @@
 import {
   offerSchema,
-  pageOf,
   priceSchema,
   type Offer,
   type OfferCreate,
@@ -8,17 +7,13 @@ import {
   type Price,
   type PriceSet,
 } from '@maslin/shared'
-import { get, patch, post, remove } from './client'
-
-const offersSchema = pageOf(offerSchema)
-const pricesSchema = pageOf(priceSchema)
+import { getAll, patch, post, remove } from './client'
 
 /** Offers with the price that holds on the day (absent: today). */
-export const fetchOffers = async (
+export const fetchOffers = (
   farmId: string,
   query: { asOf?: string; feedId?: string } = {},
-): Promise<Offer[]> =>
-  (await get(`/farms/${farmId}/offers`, offersSchema, { query: { ...query, limit: 500 } })).items
+): Promise<Offer[]> => getAll(`/farms/${farmId}/offers`, offerSchema, { ...query })
 export const createOffer = (farmId: string, body: OfferCreate): Promise<Offer> =>
   post(`/farms/${farmId}/offers`, offerSchema, body)
 export const updateOffer = (
@@ -31,8 +26,8 @@ export const removeOffer = (farmId: string, offerId: string, version: number): P
   remove(`/farms/${farmId}/offers/${offerId}`, version)
 
 /** Every price of an offer, newest first. */
-export const fetchPrices = async (farmId: string, offerId: string): Promise<Price[]> =>
-  (await get(`/farms/${farmId}/offers/${offerId}/prices`, pricesSchema, { query: { limit: 500 } })).items
+export const fetchPrices = (farmId: string, offerId: string): Promise<Price[]> =>
+  getAll(`/farms/${farmId}/offers/${offerId}/prices`, priceSchema)
 /** Sets the price of a day; the same day again replaces it. */
 export const setPrice = (farmId: string, offerId: string, body: PriceSet): Promise<Offer> =>
   post(`/farms/${farmId}/offers/${offerId}/prices`, offerSchema, body)

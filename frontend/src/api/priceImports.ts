@@ -1,15 +1,12 @@
 import {
   importPreviewSchema,
-  pageOf,
   priceImportSchema,
   type ImportApplyRequest,
   type ImportPreview,
   type ImportPreviewRequest,
   type PriceImport,
 } from '@maslin/shared'
-import { get, post } from './client'
-
-const importsSchema = pageOf(priceImportSchema)
+import { getAll, post } from './client'
 
 /** Reads a price list and says of every row what it would do. Saves nothing. */
 export const previewImport = (
@@ -24,5 +21,5 @@ export const applyImport = (
   body: ImportApplyRequest,
   idempotencyKey: string,
 ): Promise<PriceImport> => post(`/farms/${farmId}/price-imports`, priceImportSchema, body, { idempotencyKey })
-export const fetchImports = async (farmId: string): Promise<PriceImport[]> =>
-  (await get(`/farms/${farmId}/price-imports`, importsSchema)).items
+export const fetchImports = (farmId: string): Promise<PriceImport[]> =>
+  getAll(`/farms/${farmId}/price-imports`, priceImportSchema)

@@ -1,10 +1,8 @@
-import { pageOf, supplierSchema, type Supplier, type SupplierCreate } from '@maslin/shared'
-import { get, patch, post, remove } from './client'
+import { supplierSchema, type Supplier, type SupplierCreate } from '@maslin/shared'
+import { getAll, patch, post, remove } from './client'
 
-const suppliersSchema = pageOf(supplierSchema)
-
-export const fetchSuppliers = async (farmId: string): Promise<Supplier[]> =>
-  (await get(`/farms/${farmId}/suppliers`, suppliersSchema, { query: { limit: 500 } })).items
+export const fetchSuppliers = (farmId: string): Promise<Supplier[]> =>
+  getAll(`/farms/${farmId}/suppliers`, supplierSchema)
 export const createSupplier = (farmId: string, body: SupplierCreate): Promise<Supplier> =>
   post(`/farms/${farmId}/suppliers`, supplierSchema, body)
 export const updateSupplier = (
