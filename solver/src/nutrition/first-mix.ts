@@ -179,14 +179,14 @@ function intakeWindow(
   options: FirstMixOptions,
 ): Limit | undefined {
   const most = requirement.intakeDryMatterKg
-  const common_ = { ...common, id: 'intake', kind: 'intake' as const, max: most }
+  const window = { ...common, id: 'intake', kind: 'intake' as const, max: most }
   if (options.basis === 'besideForage') {
     if (options.baseIntakeKg !== undefined && options.baseIntakeKg >= most) return undefined
-    return { ...common_, source: requirement.source, status: requirement.status }
+    return { ...window, source: requirement.source, status: requirement.status }
   }
   const least = defaults.intakeMinShareOfTable
   return {
-    ...common_,
+    ...window,
     min: most * least.value,
     source: `${requirement.source}; lower end: ${least.source}`.slice(0, 600),
     status: requirement.status,

@@ -148,33 +148,36 @@ function scale(draft: Draft, stage: StageRow): void {
 function addRows(draft: Draft, rows: readonly RequirementRow[], animal: RequirementQuery): boolean {
   const first = rows[0]
   if (!first) return false
+  const figures = { ...first, sourceKeys: [first.sourceKey] }
   if (first.milkKg !== undefined) {
     if (animal.milkKg === undefined) return false
-    return addFigures(draft, { ...first, sourceKeys: [first.sourceKey] }, animal.milkKg / first.milkKg)
+    addFigures(draft, figures, animal.milkKg / first.milkKg)
+    return true
   }
-  if (first.dailyGainG === undefined) return addFigures(draft, { ...first, sourceKeys: [first.sourceKey] }, 1)
+  if (first.dailyGainG === undefined) {
+    addFigures(draft, figures, 1)
+    return true
+  }
   if (animal.dailyGainG === undefined) return false
   if (animal.dailyGainG <= 0) return true
   const none: RequirementRow = { ...first, dailyGainG: 0, intakeDryMatterKg: 0, amounts: {} }
   for (const nutrient of rowNutrients) if (first.amounts[nutrient] !== undefined) none.amounts[nutrient] = 0
-  const figures = figuresAt([none, ...rows], 'dailyGainG', animal.dailyGainG)
-  if (!figures) return false
-  if (figures.outside) {
+  const atGain = figuresAt([none, ...rows], 'dailyGainG', animal.dailyGainG)
+  if (!atGain) return false
+  if (atGain.outside) {
     draft.outsideTable = true
-    const [low, high] = figures.outside
+    const [low, high] = atGain.outside
     draft.notes.push({
       code: 'outsideTable',
       params: { of: 'dailyGainG', value: animal.dailyGainG, low, high },
     })
   }
-  const gain = draft.dailyGainG
-  addFigures(draft, figures, 1)
-  if (gain === undefined) delete draft.dailyGainG
+  addFigures(draft, atGain, 1)
   return true
 }
 
 /** A figure that either part lacks is not known for the sum; an addition without an intake leaves the intake. */
-function addFigures(draft: Draft, figures: Omit<TableFigures, 'between' | 'outside'>, times: number): true {
+function addFigures(draft: Draft, figures: Omit<TableFigures, 'between' | 'outside'>, times: number): void {
   if (draft.intakeDryMatterKg !== undefined) {
     draft.intakeDryMatterKg += (figures.intakeDryMatterKg ?? 0) * times
   }
@@ -194,7 +197,6 @@ function addFigures(draft: Draft, figures: Omit<TableFigures, 'between' | 'outsi
   if (!draft.notes.some((note) => note.code === 'sumOfRows')) {
     draft.notes.push({ code: 'sumOfRows', params: { factor: 1 } })
   }
-  return true
 }
 
 const kidTypes: Partial<Record<NonNullable<StageRow['equation']>, KidType>> = {
