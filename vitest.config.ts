@@ -15,7 +15,7 @@ export default defineConfig({
         test: {
           name: 'unit',
           environment: 'node',
-          include: ['{shared,solver,backend}/{src,scripts}/**/*.test.ts'],
+          include: ['{shared,solver,backend}/{src,scripts}/**/*.test.ts', 'tests/support/**/*.test.ts'],
           ...group(0, 2),
         },
       },

@@ -51,10 +51,11 @@ export async function runVitest(filters, env) {
  */
 
 /**
+ * What a run counts for.
  * @param {Report} report
  * @param {number} exitCode
  */
-function count(report, exitCode) {
+export function count(report, exitCode) {
   const unrun = report.numPendingTests + report.numTodoTests
   if (unrun > 0) say(`${unrun} tests were skipped; they count as failed.`)
   const broken = report.testResults.filter(
