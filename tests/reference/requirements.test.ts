@@ -112,6 +112,13 @@ describe('NRC 1985 (Sheep), Table 1, at its own weights', () => {
     expect(wether.notes.map((note) => note.code)).toContain('otherStage')
   })
 
+  it('rams ask for 15 % more energy and protein than the rows they borrow, and name the factor', () => {
+    const ram = lookUp({ ...ewe('maintenance', 80), class: 'ram' })
+    expect(ram.amount('metabolizableEnergy')).toBeCloseTo(1.15 * 2.6, 12)
+    expect(ram.amount('calcium')).toBe(2.7)
+    expect(ram.needs.find((need) => need.nutrient === 'metabolizableEnergy')?.source).toContain('CSIRO')
+  })
+
   it('lambs carry the gain the table was made for', () => {
     const lamb = lookUp({ ...ewe('finishing', 40), class: 'lamb' })
     expect(lamb.notes).toContainEqual({ code: 'tableGain', params: { gainG: 275 } })

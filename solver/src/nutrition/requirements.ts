@@ -133,6 +133,7 @@ function deriveEnergy(draft: Draft): void {
 
 function scale(draft: Draft, stage: StageRow): void {
   if (stage.factor === 1) return
+  if (stage.factorSourceKey) draft.sourceKeys = [...new Set([...draft.sourceKeys, stage.factorSourceKey])]
   if (draft.intakeDryMatterKg !== undefined) draft.intakeDryMatterKg *= stage.factor
   for (const nutrient of scaledNutrients) {
     const amount = draft.amounts[nutrient]
@@ -140,7 +141,6 @@ function scale(draft: Draft, stage: StageRow): void {
     draft.amounts[nutrient] = amount * stage.factor
     draft.derived.set(nutrient, draft.sourceKeys)
   }
-  if (stage.factorSourceKey) draft.sourceKeys = [...new Set([...draft.sourceKeys, stage.factorSourceKey])]
   draft.notes.push({ code: 'sumOfRows', params: { factor: stage.factor } })
 }
 
