@@ -30,6 +30,8 @@ export const problemCodes = {
   missing_price: 422,
   too_many_requests: 429,
   internal_error: 500,
+  /** What is stored no longer matches its hash. */
+  damaged_record: 500,
   busy: 503,
   not_ready: 503,
   deadline_passed: 503,

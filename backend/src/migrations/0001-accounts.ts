@@ -30,6 +30,7 @@ export const accounts: Migration = {
       created_at ${moment} NOT NULL,
       expires_at ${moment} NOT NULL,
       rotated_at ${moment} NULL,
+      KEY expiry (expires_at),
       FOREIGN KEY (session_id) REFERENCES sessions (id) ON DELETE CASCADE
     ) ${options}`,
     `CREATE TABLE IF NOT EXISTS farms (

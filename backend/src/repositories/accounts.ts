@@ -1,4 +1,4 @@
-import type { Transaction } from 'sequelize'
+import { Op, QueryTypes, type Transaction } from 'sequelize'
 import { v7 as uuidv7 } from 'uuid'
 import type { Role, UnitSystem } from '@maslin/shared'
 import type { Database } from '../database/database'
@@ -8,7 +8,7 @@ import { plain } from './farmTable'
 export type { RefreshTokenRow, SessionRow, UserRow } from '../models/accounts'
 
 /** People, their sign-ins, and the beginning of a farm. */
-export function accounts(database: Database, transaction: Transaction) {
+export function accounts(database: Database, transaction: Transaction | null = null) {
   const { models } = database
   const now = new Date()
   const times = { createdAt: now, updatedAt: now }
@@ -49,13 +49,20 @@ export function accounts(database: Database, transaction: Transaction) {
       return row
     },
 
-    /** The sign-in and whose it is, ended ones included. */
-    async session(id: string): Promise<{ session: SessionRow; user: UserRow } | undefined> {
-      const session = await models.sessions.findOne({ where: { id }, transaction })
-      if (!session) return undefined
-      const row = plain<SessionRow>(session)
-      const user = await models.users.findOne({ where: { id: row.userId }, transaction })
-      return user ? { session: row, user: plain<UserRow>(user) } : undefined
+    /** The person of a sign-in that still holds; read on every call, so in one statement. */
+    async personOf(sessionId: string): Promise<Pick<UserRow, 'id' | 'name' | 'email'> | undefined> {
+      const [row] = await database.sequelize.query<Pick<UserRow, 'id' | 'name' | 'email'>>(
+        `SELECT users.id, users.name, users.email
+           FROM sessions JOIN users ON users.id = sessions.user_id
+          WHERE sessions.id = :sessionId AND sessions.ended_at IS NULL AND sessions.expires_at > UTC_TIMESTAMP(3)`,
+        { replacements: { sessionId }, type: QueryTypes.SELECT, transaction },
+      )
+      return row
+    },
+
+    async session(id: string): Promise<SessionRow | undefined> {
+      const row = await models.sessions.findOne({ where: { id }, transaction })
+      return row ? plain<SessionRow>(row) : undefined
     },
 
     async endSession(id: string, endedBy: NonNullable<SessionRow['endedBy']>): Promise<void> {
@@ -71,6 +78,13 @@ export function accounts(database: Database, transaction: Transaction) {
     async refreshToken(tokenHash: string): Promise<RefreshTokenRow | undefined> {
       const row = await models.refreshTokens.findOne({ where: { tokenHash }, transaction, lock: true })
       return row ? plain<RefreshTokenRow>(row) : undefined
+    },
+
+    /** What can no longer be used need not be kept. */
+    async removeExpired(): Promise<void> {
+      const expired = { where: { expiresAt: { [Op.lt]: now } }, limit: 1000, transaction }
+      await models.refreshTokens.destroy(expired)
+      await models.sessions.destroy(expired)
     },
 
     async markRotated(tokenHash: string): Promise<void> {

@@ -8,7 +8,7 @@ import type { FarmAccountRow, MembershipRow } from './farms'
  * What one person may reach over all their farms. Every farm in the answer is one they are a member of now; whatever is
  * read of a farm afterwards goes through `inFarm` with its id.
  */
-export function acrossFarms(database: Database, userId: string, transaction: Transaction) {
+export function acrossFarms(database: Database, userId: string, transaction: Transaction | null = null) {
   const { models } = database
   return {
     async memberships(filter: { role?: Role } = {}): Promise<{ farm: FarmAccountRow; role: Role }[]> {

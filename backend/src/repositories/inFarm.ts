@@ -5,6 +5,7 @@ import { FarmAccount } from './farms'
 import { FarmTable } from './farmTable'
 import { FeedValueTable } from './feeds'
 import { PartTable } from './partTable'
+import { People } from './people'
 import { OfferPrices } from './prices'
 
 /**
@@ -22,6 +23,7 @@ export function inFarm(database: Database, farmId: string, transaction: Transact
     now,
     account: new FarmAccount(models, ...parts),
     members: new FarmTable(models.memberships, ...parts),
+    people: new People(models, transaction),
     feeds: new FarmTable(models.feeds, ...parts),
     feedValues: new FeedValueTable(models.feedValues, farmId, transaction),
     suppliers: new FarmTable(models.suppliers, ...parts),

@@ -5,6 +5,7 @@ import type { SignedIn } from '../auth/signedIn'
 import type { Config } from '../config'
 import type { Database } from '../database/database'
 import type { FarmRepositories } from '../repositories/inFarm'
+import type { RequirementLibrary } from '../services/requirementLibrary'
 import type { SolvingPool } from '../solving/pool'
 
 /** What the whole API works with, made once at start. */
@@ -12,6 +13,8 @@ export interface Services {
   config: Config
   database: Database
   solving: Pick<SolvingPool, 'solveMix' | 'traceCurve' | 'ready'>
+  /** Requirement tables and first-mix defaults, read at start by `loadRequirementLibrary`. */
+  requirements: RequirementLibrary
   /** False while the server starts and while it shuts down. */
   isOpen: () => boolean
 }

@@ -27,6 +27,7 @@ export default {
   missing_price: 'A price is missing for the day asked for.',
   too_many_requests: 'Too many tries in a short time. Wait {seconds} seconds and try again.',
   internal_error: 'Something went wrong on the server. Nothing was changed; try again.',
+  damaged_record: 'What is stored here is not what was saved. It is not shown; restore it from a backup.',
   busy: 'The server has its hands full. Try again in {seconds} seconds.',
   not_ready: 'The server is starting. Try again in a moment.',
   deadline_passed: 'The answer took too long and was given up. Try again.',

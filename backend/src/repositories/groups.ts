@@ -1,0 +1,1 @@
+export type { BaseDietItemRow, GroupRow, NeedOverrideRow } from '../models/groups'

@@ -1,0 +1,1 @@
+export type { MixFeedRow, MixRow } from '../models/mixes'

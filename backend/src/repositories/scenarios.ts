@@ -1,0 +1,1 @@
+export type { CommentRow, ReviewRow, ScenarioRevisionRow, ScenarioRow } from '../models/scenarios'

@@ -1,0 +1,30 @@
+import { curveRequestSchema, curveSchema, solveRequestSchema, solveResponseSchema } from '@maslin/shared'
+import { solveDraft, traceDraftCurve, type SolveContext } from '../services/solve'
+import { route, type Call } from './route'
+
+/** What a solve may reach on behalf of a call. */
+export const solveContextOf = (call: Call<unknown, unknown, unknown>): SolveContext => ({
+  run: call.inFarm,
+  library: call.requirements,
+  pool: call.solving,
+  signal: call.signal,
+})
+
+export const solveRoutes = [
+  route({
+    method: 'post',
+    path: '/farms/:farmId/solve',
+    access: 'mixes.solve',
+    body: solveRequestSchema,
+    answer: solveResponseSchema,
+    handle: (call) => solveDraft(solveContextOf(call), call.body),
+  }),
+  route({
+    method: 'post',
+    path: '/farms/:farmId/solve/curve',
+    access: 'mixes.solve',
+    body: curveRequestSchema,
+    answer: curveSchema,
+    handle: (call) => traceDraftCurve(solveContextOf(call), call.body),
+  }),
+]
