@@ -132,6 +132,10 @@ describe('the private MariaDB', () => {
     await expect(connected(server.url.replace(password, 'wrong'), readNothing)).rejects.toThrow(
       /Access denied/,
     )
+    const asRoot = new URL(server.url)
+    asRoot.username = 'root'
+    asRoot.password = ''
+    await expect(connected(asRoot.href, readNothing)).rejects.toThrow(/Access denied|not allowed to connect/)
   })
 
   it('runs with the settings that the application counts on', async () => {
