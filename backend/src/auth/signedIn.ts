@@ -57,11 +57,8 @@ export function recognise({ database, jwtSecret, secure }: SignInOptions): Reque
 }
 
 async function findSignedIn(database: Database, { sub, sid }: AccessClaims): Promise<SignedIn | undefined> {
-  const found = await database.transaction((transaction) => accounts(database, transaction).session(sid))
-  if (!found || found.user.id !== sub) return undefined
-  const { session, user } = found
-  if (session.endedAt || session.expiresAt <= new Date()) return undefined
-  return { id: user.id, name: user.name, email: user.email, sessionId: session.id }
+  const person = await accounts(database).personOf(sid)
+  return person?.id === sub ? { ...person, sessionId: sid } : undefined
 }
 
 export function cookieOf(request: Request, name: string): string | undefined {

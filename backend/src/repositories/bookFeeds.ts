@@ -28,7 +28,10 @@ export function bookFeeds({ models }: Database, transaction: Transaction | null 
         feeds.map((content, position) => ({ bookKey: content.key, position, name: content.name, content })),
         { transaction },
       )
-      await models.bookLoads.create({ contentHash, feeds: feeds.length, loadedAt: new Date() }, { transaction })
+      await models.bookLoads.create(
+        { contentHash, feeds: feeds.length, loadedAt: new Date() },
+        { transaction },
+      )
     },
   }
 }

@@ -52,9 +52,7 @@ function requireMember({ database }: Services): RequestHandler {
     const { farmId } = request.params
     if (!idSchema.safeParse(farmId).success) throw notFound()
     const { id } = signedInFrom(response.locals)
-    const role = await database.transaction((transaction) =>
-      accounts(database, transaction).roleOn(String(farmId), id),
-    )
+    const role = await accounts(database).roleOn(String(farmId), id)
     if (!role) throw notFound()
     response.locals.role = role
     next()

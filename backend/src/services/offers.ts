@@ -1,7 +1,19 @@
-import { packageWeightKg, pricePerKg, type Offer, type PackageUnit } from '@maslin/shared'
+import {
+  packageWeightKg,
+  pricePerKg,
+  type Offer,
+  type OfferUpdate,
+  type offerCreateSchema,
+  type PackageUnit,
+  type PriceSet,
+} from '@maslin/shared'
 import { Decimal } from 'decimal.js'
+import type { z } from 'zod'
+import { AppError, invalidField, notFound } from '../errors'
 import type { FarmRepositories } from '../repositories/inFarm'
-import type { PricedOfferRow } from '../repositories/prices'
+import type { OfferRow, PricedOfferRow } from '../repositories/prices'
+import { today, withoutAbsent } from './changes'
+import { putPrice } from './prices'
 
 /** Trailing zeros of a stored decimal say nothing: `12.5000` is `12.5`. */
 export const plainDecimal = (stored: string): string => new Decimal(stored).toFixed()
@@ -117,4 +129,103 @@ export async function cheapestByFeed(
   return new Map(
     [...offers].flatMap(([feedId, [cheapest]]) => (cheapest ? [[feedId, cheapest] as const] : [])),
   )
+}
+
+/** Offers with their price on a day, by feed and supplier. */
+export async function listOffers(farm: FarmRepositories, date: string, feedId?: string): Promise<Offer[]> {
+  return (await farm.offerPrices.asOf(date, feedId ? { feedId } : {})).map(toOffer)
+}
+
+/** An offer with its price on a day. */
+export async function getOffer(farm: FarmRepositories, id: string, date = today()): Promise<Offer> {
+  const [row] = await farm.offerPrices.asOf(date, { offerId: id })
+  if (!row) throw notFound()
+  return toOffer(row)
+}
+
+/**
+ * Makes an offer, with its first price where one is given (of today, unless a day is given).
+ * @throws AppError `conflict` where the supplier sells the feed in that package already
+ */
+export async function createOffer(
+  farm: FarmRepositories,
+  { price, date, ...fields }: z.output<typeof offerCreateSchema>,
+): Promise<Offer> {
+  if (!(await farm.suppliers.findBy({ id: fields.supplierId }))) {
+    throw invalidField('supplierId', 'unknown', 'The farm has no such supplier.')
+  }
+  if (!(await farm.feeds.findBy({ id: fields.feedId }))) {
+    throw invalidField('feedId', 'unknown', 'The farm has no such feed.')
+  }
+  const row = { ...fields, packageQuantity: quantityText(fields.packageQuantity) }
+  await requireNewPackage(farm, row)
+  const { id } = await farm.offers.insert(row)
+  const day = date ?? today(farm.now)
+  if (price !== undefined) await putPrice(farm, id, { date: day, price })
+  const offer = await getOffer(farm, id, day)
+  await farm.audit.record({ action: 'create', entity: 'offer', entityId: id, after: offer })
+  return offer
+}
+
+/** @throws AppError `conflict` where the supplier sells the feed in that package already */
+export async function updateOffer(
+  farm: FarmRepositories,
+  id: string,
+  version: number,
+  changes: OfferUpdate,
+): Promise<Offer> {
+  const before = await getOffer(farm, id)
+  const row = await farm.offers.get(id)
+  const { packageQuantity, ...rest } = changes
+  const wanted = withoutAbsent({
+    ...rest,
+    packageQuantity: packageQuantity === undefined ? undefined : quantityText(packageQuantity),
+  })
+  if (row.version === version) await requireNewPackage(farm, { ...row, ...wanted }, id)
+  await farm.offers.update(id, version, wanted)
+  const after = await getOffer(farm, id)
+  await farm.audit.record({ action: 'update', entity: 'offer', entityId: id, before, after })
+  return after
+}
+
+/** Removes an offer with its prices, which stay on record in the audit. */
+export async function removeOffer(farm: FarmRepositories, id: string, version: number): Promise<void> {
+  const before = await getOffer(farm, id)
+  const prices = await farm.prices.list({ offerId: id }, { orderBy: [['date', 'ASC']] })
+  await farm.offers.remove(id, version)
+  await farm.audit.record({
+    action: 'delete',
+    entity: 'offer',
+    entityId: id,
+    before: { ...before, prices: prices.map(({ date, price }) => ({ date, price: plainDecimal(price) })) },
+  })
+}
+
+/** Sets the price of a day; one the day had already is replaced. @returns the offer with its price on that day */
+export async function setPrice(farm: FarmRepositories, offerId: string, price: PriceSet): Promise<Offer> {
+  await farm.offers.get(offerId, { forUpdate: true })
+  await putPrice(farm, offerId, price)
+  return getOffer(farm, offerId, price.date)
+}
+
+/** Quantities are stored with six places. */
+export const quantityText = (quantity: number): string => new Decimal(quantity).toFixed(6)
+
+async function requireNewPackage(
+  farm: FarmRepositories,
+  {
+    supplierId,
+    feedId,
+    packageQuantity,
+    packageUnit,
+  }: Pick<OfferRow, 'supplierId' | 'feedId' | 'packageQuantity' | 'packageUnit'>,
+  exceptId?: string,
+): Promise<void> {
+  const other = await farm.offers.findBy({ supplierId, feedId, packageQuantity, packageUnit })
+  if (!other || other.id === exceptId) return
+  const message = 'This supplier has an offer of this feed in this package already.'
+  throw new AppError('conflict', {
+    detail: message,
+    errors: [{ path: 'packageQuantity', code: 'taken', message }],
+  })
 }
