@@ -98,13 +98,21 @@ export function buyInCosts(
         results.push({ column: id, cost, entersBelow: null, amount: null })
         continue
       }
-      const amount = options.amounts
-        ? largestAmount(await workspace.face(), workspace.optimum, entry.duals, j, until)
-        : null
+      const amount = options.amounts ? await amountOf(workspace, j, entry.duals, until) : null
       results.push({ column: id, cost, entersBelow: entry.entersBelow, amount })
     }
     return results
   })
+}
+
+async function amountOf(
+  workspace: Workspace,
+  j: number,
+  duals: number[],
+  until: number,
+): Promise<number | null> {
+  const { ranges, optimum } = workspace
+  return ranges ? ranges.largestEntry(j) : largestAmount(await workspace.face(), optimum, duals, j, until)
 }
 
 async function entryOf(

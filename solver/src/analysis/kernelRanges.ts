@@ -57,6 +57,39 @@ export class KernelRanges {
     return [Math.min(down, 0), Math.max(up, 0)]
   }
 
+  /**
+   * The largest amount of a column that rests at its lower bound, were it to enter: until a basic column or row meets
+   * a limit, or it meets its own; null where nothing stops it. In units of the column.
+   */
+  largestEntry(column: number): number | null {
+    const { scaled, outcome, lp } = this.o
+    const size = this.kernel.rows.length
+    const touched = new Float64Array(scaled.numRows)
+    for (let i = 0; i < scaled.numRows; i++)
+      for (let k = scaled.starts[i]!; k < scaled.starts[i + 1]!; k++)
+        if (scaled.indices[k] === column) touched[i] = scaled.values[k]!
+    let most = scaled.colUpper[column]! - scaled.colLower[column]!
+    const meet = (rate: number, below: number, above: number) => {
+      if (Math.abs(rate) > STILL) most = Math.min(most, Math.max((rate > 0 ? above : below) / rate, 0))
+    }
+    for (let c = 0; c < size; c++) {
+      let rate = 0
+      for (let r = 0; r < size; r++)
+        rate -= this.kernel.inverse[c * size + r]! * touched[this.kernel.rows[r]!]!
+      const j = this.kernel.columns[c]!
+      const value = outcome.columns[j]!.value / scaled.colScale[j]!
+      meet(rate, scaled.colLower[j]! - value, scaled.colUpper[j]! - value)
+    }
+    for (let q = 0; q < this.freeRows.length; q++) {
+      const i = this.freeRows[q]!
+      let rate = touched[i]!
+      for (let r = 0; r < size; r++) rate -= this.rates[q * size + r]! * touched[this.kernel.rows[r]!]!
+      const activity = outcome.rows[i]!.activity * scaled.rowScale[i]!
+      meet(rate, scaled.rowLower[i]! - activity, scaled.rowUpper[i]! - activity)
+    }
+    return most === Infinity ? null : lp.columns[column]!.lower + most * scaled.colScale[column]!
+  }
+
   /** The lowest and the highest value the limit of row `i` may take; null where the row rests on no limit. */
   of(row: number, limit: number): { downTo: number; upTo: number } | null {
     const r = this.kernel.rows.indexOf(row)

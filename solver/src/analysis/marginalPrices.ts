@@ -1,6 +1,6 @@
 import type { LinearProgram, LinearRow, OptimalOutcome, SideName } from '../lp/types'
 import { furthestLimit } from './face'
-import { KernelRanges } from './kernelRanges'
+import type { KernelRanges } from './kernelRanges'
 import { isZeroPrice } from './optimum'
 import type { AnalysisOptions, MarginalPrice } from './types'
 import { inWorkspace, positions, settled, sidesOf, type Workspace } from './workspace'
@@ -29,9 +29,7 @@ export function marginalPrices(
 ): Promise<MarginalPrice[]> {
   return inWorkspace(lp, optimal, options, async (workspace, until) => {
     const rows = options.rows ? positions(lp.rows, options.rows, 'row') : lp.rows.map((_, i) => i)
-    const { kernel, pricesUnique, amountsUnique } = workspace.optimum
-    const ranges =
-      kernel && pricesUnique && amountsUnique ? new KernelRanges(workspace.optimum, kernel) : null
+    const { ranges } = workspace
     const prices: MarginalPrice[] = []
     for (const i of rows)
       for (const { side } of sidesOf(lp.rows[i]!)) {

@@ -1,3 +1,4 @@
+import { recallFactorisation } from '../lp/answer'
 import { withIntegersFixed } from '../lp/evidence'
 import { factorise, solveBasis, type Basis, type Kernel } from '../lp/kernel'
 import { scaleProgram, type ScaledProgram } from '../lp/scaled'
@@ -31,13 +32,14 @@ export interface Optimum {
 export function studyOptimum(program: LinearProgram, outcome: OptimalOutcome): Optimum {
   const amounts = outcome.columns.map((column) => column.value)
   const lp = program.columns.some((column) => column.integer) ? withIntegersFixed(program, amounts) : program
-  const scaled = scaleProgram(lp)
+  const known = recallFactorisation(lp, outcome)
+  const scaled = known?.scaled ?? scaleProgram(lp)
   const basis: Basis = {
     columns: outcome.columns.map((column) => column.basis),
     rows: outcome.rows.map((row) => row.basis),
   }
-  const kernel = factorise(scaled, basis)
-  const valueSize = kernel ? solveBasis(scaled, basis, kernel).valueSize : null
+  const kernel = known?.kernel ?? factorise(scaled, basis)
+  const valueSize = known?.valueSize ?? (kernel ? solveBasis(scaled, basis, kernel).valueSize : null)
   const n = lp.columns.length
   const m = lp.rows.length
   const optimum: Optimum = {

@@ -1,6 +1,7 @@
 import { DEFAULT_DEADLINE_MS } from '../lp/solve'
 import { LpSession } from '../lp/session'
 import type { LinearProgram, OptimalOutcome, Outcome, RowSide, SideName, StoppedOutcome } from '../lp/types'
+import { KernelRanges } from './kernelRanges'
 import { studyOptimum, type Optimum } from './optimum'
 import { AnalysisStopped, type AnalysisOptions, type AnalysisSession } from './types'
 
@@ -9,12 +10,20 @@ export class Workspace implements AnalysisSession {
   readonly optimum: Optimum
   private coneModel: Promise<LpSession> | undefined
   private faceModel: Promise<LpSession> | undefined
+  private kernelRanges: KernelRanges | undefined
 
   constructor(
     readonly program: LinearProgram,
     outcome: OptimalOutcome,
   ) {
     this.optimum = studyOptimum(program, outcome)
+  }
+
+  /** Ratio tests on the factorised basis; null unless prices and amounts are proven to be the only ones. */
+  get ranges(): KernelRanges | null {
+    const { kernel, pricesUnique, amountsUnique } = this.optimum
+    if (!kernel || !pricesUnique || !amountsUnique) return null
+    return (this.kernelRanges ??= new KernelRanges(this.optimum, kernel))
   }
 
   /**

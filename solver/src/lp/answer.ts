@@ -1,5 +1,5 @@
 import { checkOutcome } from './certificate'
-import { factorise, solveBasis, type Basis } from './kernel'
+import { factorise, solveBasis, type Basis, type Kernel } from './kernel'
 import type { ScaledProgram } from './scaled'
 import type { ColumnResult, EngineName, LinearProgram, OptimalOutcome, RowResult } from './types'
 
@@ -14,6 +14,27 @@ export interface ScaledOptimum {
 const KERNEL_NOISE = 1e-12
 /** The same for values taken from an engine, relative to 1 + |value| in scaled terms. */
 const ENGINE_NOISE = 1e-9
+
+/** The factorised basis behind an answer, with the program it belongs to. */
+export interface Factorisation {
+  lp: LinearProgram
+  scaled: ScaledProgram
+  kernel: Kernel
+  valueSize: Float64Array
+}
+
+const factorisations = new WeakMap<OptimalOutcome, Factorisation>()
+
+/** The factorisation behind an answer where it is still at hand: not after a copy, nor for another program. */
+export function recallFactorisation(lp: LinearProgram, outcome: OptimalOutcome): Factorisation | undefined {
+  const known = factorisations.get(outcome)
+  return known?.lp === lp ? known : undefined
+}
+
+/** For answers whose scaled program is about to change. */
+export function forgetFactorisation(outcome: OptimalOutcome): void {
+  factorisations.delete(outcome)
+}
 
 /**
  * Turns an engine's optimum into an outcome in the caller's units with its certificate: first the basis solved
@@ -32,7 +53,10 @@ export function finishOptimum(
     const noise = basic.valueSize.map((size) => KERNEL_NOISE * size)
     const outcome = unscale(lp, scaled, { ...basic, basis: optimum.basis }, noise, engine, milliseconds)
     outcome.certificate = checkOutcome(lp, outcome)
-    if (outcome.certificate.valid) return outcome
+    if (outcome.certificate.valid) {
+      factorisations.set(outcome, { lp, scaled, kernel, valueSize: basic.valueSize })
+      return outcome
+    }
   }
   const noise = optimum.value.map((value) => ENGINE_NOISE * (1 + Math.abs(value)))
   const raw = unscale(lp, scaled, optimum, noise, engine, milliseconds)

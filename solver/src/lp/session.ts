@@ -1,3 +1,4 @@
+import { forgetFactorisation } from './answer'
 import { attempt, conclude, type Work } from './attempt'
 import { highsEngine } from './engines/highs'
 import { HighsModel } from './engines/highsModel'
@@ -108,6 +109,7 @@ export class LpSession {
     const work: Work = { engine: highsEngine, until, started }
     try {
       const outcome = conclude(this.lp, this.scaled, this.model.run(until), work)
+      if (outcome.status === 'optimal') forgetFactorisation(outcome)
       if (outcome.status !== 'stopped' || outcome.reason === 'deadline') return outcome
       this.model.clearSolver()
     } catch (error) {
