@@ -64,17 +64,23 @@ export function followBasis(
   }
   const start = valueOf(side.denominator, amounts)
   const price = solved.dual[side.row]!
-  const steps = primalRange(p, kernel, solved, beta, outcome)
+  // Where there is nothing to divide by (an empty mix) moving the limit does not move the mix.
+  const empty = start <= 0
+  const steps = empty ? { up: Infinity, down: -Infinity } : primalRange(p, kernel, solved, beta, outcome)
   const shifts = dualRange(p, kernel, solved.dual, denominator, eta, outcome)
   const tau = (step: number, base: number): number => tauOf(step, base, delta) / rowScale
   const shiftUp = price > 0 ? shifts.up : shifts.down
   const shiftDown = price > 0 ? shifts.down : shifts.up
-  const stepAt = (t: number): number => (t * rowScale * start) / (1 - t * rowScale * delta)
+  const stepAt = (t: number): number => (empty ? 0 : (t * rowScale * start) / (1 - t * rowScale * delta))
   return {
     rests: true,
-    up: Math.min(tau(steps.up, start), price === 0 ? Infinity : tau(shiftUp, price)),
-    down: -Math.max(tau(steps.down, start), price === 0 ? -Infinity : tau(shiftDown, price)),
+    up: Math.min(empty ? Infinity : tau(steps.up, start), price === 0 ? Infinity : tau(shiftUp, price)),
+    down: -Math.max(
+      empty ? -Infinity : tau(steps.down, start),
+      price === 0 ? -Infinity : tau(shiftDown, price),
+    ),
     priceAt: (t) => {
+      if (empty) return 0
       const stretch = 1 - t * rowScale * delta
       return ((price / stretch) * (start / stretch) * rowScale) / p.costScale
     },

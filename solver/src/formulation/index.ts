@@ -1,4 +1,5 @@
 export { solveMix, type SolveMixOptions } from './solve'
+export { traceMixCurve, CurveUnavailable, type CurveOptions } from './curve'
 export {
   buildProgram,
   type BuildOptions,
