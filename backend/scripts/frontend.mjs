@@ -42,7 +42,7 @@ export async function buildFrontend() {
     {
       quiet: true,
       cwd: inProject('frontend'),
-      env: { ...process.env, NODE_ENV: 'production' },
+      env: { ...process.env, NODE_ENV: 'production', NO_COLOR: '1' },
     },
   )
   if (code !== 0)
