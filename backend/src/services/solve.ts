@@ -37,36 +37,47 @@ export async function solveDraft(
 /** Least cost along a price or one side of a limit. Throws like `solveDraft`. */
 export async function traceDraftCurve(
   context: SolveContext,
-  request: {
-    draft: MixDraft
-    along: CurveAlong
-    from?: number | undefined
-    to?: number | undefined
-    deadlineMs: number
-  },
+  request: Axis & { draft: MixDraft; deadlineMs: number },
 ): Promise<Curve> {
-  const { draft, along, from, to, deadlineMs } = request
-  if (from !== undefined && to !== undefined && from >= to)
-    throw invalidField('to', 'to_not_above_from', 'The axis must end above where it begins.')
+  const { draft, along, deadlineMs } = request
   return inTime(deadlineMs, async (left) => {
     const input = await context.run((farm) => gatherInput(farm, context.library, draft, 'draft.'))
-    checkAxis(input, along)
+    const ends = endsOf(input, request)
     return solved<Curve>(
-      context.pool.traceCurve(input, { along, from, to }, { deadlineMs: left(), signal: context.signal }),
+      context.pool.traceCurve(input, { along, ...ends }, { deadlineMs: left(), signal: context.signal }),
     )
   })
 }
 
-function checkAxis(input: FormulationInput, along: CurveAlong): void {
+interface Axis {
+  along: CurveAlong
+  from?: number | undefined
+  to?: number | undefined
+}
+
+/** Ends of the axis: as given, else from half to one and a half times today's value, in its own unit. */
+function endsOf(input: FormulationInput, { along, from, to }: Axis): { from: number; to: number } {
+  const at = todaysValue(input, along)
+  const ends = { from: from ?? at * 0.5, to: to ?? (at > 0 ? at * 1.5 : 1) }
+  if (ends.from >= ends.to)
+    throw invalidField('to', 'to_not_above_from', 'The axis must end above where it begins.')
+  return ends
+}
+
+function todaysValue(input: FormulationInput, along: CurveAlong): number {
   if (along.kind === 'price') {
-    if (!input.feeds.some(({ id }) => id === along.feedId))
-      throw invalidField('along.feedId', 'unknown_feed', 'The mix has no such feed.')
-    return
+    const feed = input.feeds.find(({ id }) => id === along.feedId)
+    if (!feed) throw invalidField('along.feedId', 'unknown_feed', 'The mix has no such feed.')
+    if (feed.pricePerKg === undefined)
+      throw invalidField('along.feedId', 'no_price', 'This feed has no price on that day.')
+    return feed.pricePerKg
   }
   const limit = input.limits.find(({ id }) => id === along.limitId)
   if (!limit) throw invalidField('along.limitId', 'unknown_limit', 'The mix has no such limit.')
-  if (limit[along.side] === undefined)
+  const bound = limit[along.side]
+  if (bound === undefined)
     throw invalidField('along.side', 'no_bound', 'The limit has no figure on that side.')
+  return bound
 }
 
 /** Ends at the deadline whatever holds the work up, the database included. */
@@ -109,6 +120,10 @@ function toAppError(error: SolvingError): AppError {
     case 'crashed':
     case 'closed':
       return new AppError('not_ready', { detail: 'The solver is starting again.', ...soon })
+    case 'refused':
+      return error.code === 'stopped'
+        ? deadlinePassed(error)
+        : invalidField('along', error.code ?? 'unavailable', error.message)
     case 'failed':
       return new AppError('internal_error', { cause: error })
   }

@@ -8,12 +8,16 @@ export type SolveJob =
       kind: 'curve'
       input: FormulationInput
       along: CurveAlong
-      from?: number | undefined
-      to?: number | undefined
+      from: number
+      to: number
       deadlineMs: number
     }
 
 export type SolveResult = Answer | Curve | boolean
 
-/** What comes back: an error thrown inside the worker is told apart from the worker's own end. */
-export type SolveReply = { ok: true; value: SolveResult } | { ok: false; message: string }
+/**
+ * What comes back: an error thrown inside the worker is told apart from the worker's own end. `refused` is set where the
+ * solver says that what was asked for cannot be drawn.
+ */
+export type SolveReply =
+  { ok: true; value: SolveResult } | { ok: false; message: string; refused?: string | undefined }

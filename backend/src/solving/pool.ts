@@ -76,7 +76,7 @@ export class SolvingPool {
   /** Least cost along a price or a limit. Throws a SolvingError when no answer came. */
   async traceCurve(
     input: FormulationInput,
-    axis: { along: CurveAlong; from?: number | undefined; to?: number | undefined },
+    axis: { along: CurveAlong; from: number; to: number },
     limits: SolveLimits,
   ): Promise<Curve> {
     return (await this.#perform(
@@ -145,7 +145,10 @@ export class SolvingPool {
       try {
         const left = endsAt - performance.now()
         const reply = (await this.#piscina.run(job(inTimeToAnswer(left)), { signal })) as SolveReply
-        if (!reply.ok) throw new SolvingError('failed', reply.message)
+        if (!reply.ok) {
+          const failure = reply.refused === undefined ? 'failed' : 'refused'
+          throw new SolvingError(failure, reply.message, undefined, reply.refused)
+        }
         this.#lastAnswer = performance.now()
         return reply.value
       } catch (error) {

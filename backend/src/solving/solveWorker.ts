@@ -1,4 +1,4 @@
-import { solveLinearProgram, solveMix, traceMixCurve } from '@maslin/solver'
+import { CurveUnavailable, solveLinearProgram, solveMix, traceMixCurve } from '@maslin/solver'
 import type { SolveJob, SolveReply, SolveResult } from './jobs'
 
 /** Runs in a worker thread: one job at a time, with the engine of this thread kept warm between them. */
@@ -6,10 +6,16 @@ export default async function solve(job: SolveJob): Promise<SolveReply> {
   try {
     return { ok: true, value: await perform(job) }
   } catch (error) {
+    if (error instanceof CurveUnavailable) return { ok: false, message: explain(error), refused: error.code }
     // An engine's error text can be a whole source file.
     const text = error instanceof Error ? (error.stack ?? error.message) : String(error)
     return { ok: false, message: text.slice(0, 1500) }
   }
+}
+
+/** What is wrong in words, the reasons behind it included. */
+function explain({ message, reasons }: CurveUnavailable): string {
+  return [message, ...reasons.map(({ detail }) => detail)].join(' ').slice(0, 1000)
 }
 
 async function perform(job: SolveJob): Promise<SolveResult> {
