@@ -1,4 +1,5 @@
 import { randomBytes } from 'node:crypto'
+import { availableParallelism } from 'node:os'
 import { dirname, resolve } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import { z } from 'zod'
@@ -39,6 +40,15 @@ const environmentSchema = z.object({
   /** How many proxies stand in front and may set X-Forwarded-For. */
   TRUST_PROXY: z.coerce.number().int().min(0).max(10).default(0),
   RATE_LIMITS: onOff('on'),
+  /** Threads that solve; one processor is left to everything else. */
+  SOLVE_WORKERS: z.coerce
+    .number()
+    .int()
+    .min(1)
+    .max(64)
+    .default(Math.max(1, availableParallelism() - 1)),
+  /** Solves that may wait for a worker before further ones are told to come back. */
+  SOLVE_QUEUE: z.coerce.number().int().min(0).max(1000).default(16),
   SHUTDOWN_SECONDS: z.coerce.number().min(1).max(300).default(15),
 })
 
@@ -59,6 +69,8 @@ export interface Config {
   secure: boolean
   trustProxy: number
   rateLimits: boolean
+  solveWorkers: number
+  solveQueue: number
   shutdownMs: number
 }
 
@@ -101,6 +113,8 @@ export function readConfig(environment: Record<string, string | undefined>): Con
     secure: publicUrl?.protocol === 'https:',
     trustProxy: env.TRUST_PROXY,
     rateLimits: env.RATE_LIMITS,
+    solveWorkers: env.SOLVE_WORKERS,
+    solveQueue: env.SOLVE_QUEUE,
     shutdownMs: env.SHUTDOWN_SECONDS * 1000,
   }
 }

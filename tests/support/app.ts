@@ -4,6 +4,8 @@ import { createApp, type AppOptions } from '../../backend/src/app'
 import { readConfig, type Config } from '../../backend/src/config'
 import { openDatabase, type Database } from '../../backend/src/database/database'
 import { migrate } from '../../backend/src/database/migrate'
+import { loadBookFeeds } from '../../backend/src/services/bookFeeds'
+import { loadRequirementLibrary } from '../../backend/src/services/requirementLibrary'
 import { createTestDatabase } from './database'
 import { farmScopeTap } from './farmScopeTap'
 
@@ -51,9 +53,11 @@ export async function startTestApp({
   const database = openDatabase(config.databaseUrl, { onStatement: tap.onStatement })
   await migrate(database)
   await tap.learnTables(database)
+  await loadBookFeeds(database, config.libraryDirectory)
+  const requirements = await loadRequirementLibrary(database, config.libraryDirectory)
   const logger = log ? pino({ level: 'trace' }, { write: log }) : pino({ level: 'silent' })
   return {
-    app: createApp({ config, database, solving, logger }),
+    app: createApp({ config, database, solving, requirements, logger }),
     config,
     database,
     scopeViolations: tap.violations,

@@ -15,32 +15,26 @@ const wanted = [
   },
   { variable: 'foreign_key_checks', ok: (value: string) => value === 'ON', need: 'ON' },
   { variable: 'check_constraint_checks', ok: (value: string) => value === 'ON', need: 'ON' },
-  {
-    variable: 'innodb_flush_log_at_trx_commit',
-    ok: (value: string, strict: boolean) => !strict || value === '1',
-    need: '1, or a crash loses what was said to be saved',
-  },
 ] as const
 
 /**
  * Refuses a database server whose settings would lose data.
- * @param durable also demand that commits reach the disk; off for throw-away test servers
+ * @returns whether commits reach the disk before they are answered; without that a crash of the machine may lose some
  * @throws Error naming every setting that is wrong
  */
-export async function checkServerSettings(
-  database: Database,
-  { durable }: { durable: boolean },
-): Promise<void> {
+export async function checkServerSettings(database: Database): Promise<{ durable: boolean }> {
+  const names = [...wanted.map((setting) => setting.variable), 'innodb_flush_log_at_trx_commit']
   const rows = await database.sequelize.query<{ Variable_name: string; Value: string }>(
-    `SHOW SESSION VARIABLES WHERE Variable_name IN (${wanted.map(() => '?').join(', ')})`,
-    { replacements: wanted.map((setting) => setting.variable), type: QueryTypes.SELECT },
+    'SHOW SESSION VARIABLES WHERE Variable_name IN (:names)',
+    { replacements: { names }, type: QueryTypes.SELECT },
   )
   const values = new Map(rows.map((row) => [row.Variable_name, row.Value]))
-  const wrong = wanted.filter((setting) => !setting.ok(values.get(setting.variable) ?? '', durable))
+  const wrong = wanted.filter((setting) => !setting.ok(values.get(setting.variable) ?? ''))
   if (wrong.length > 0) {
     const lines = wrong.map(
       ({ variable, need }) => `  ${variable} is ${values.get(variable) ?? 'unknown'}; needed: ${need}`,
     )
     throw new Error(`The database server's settings are not safe to use:\n${lines.join('\n')}`)
   }
+  return { durable: values.get('innodb_flush_log_at_trx_commit') === '1' }
 }
