@@ -18,9 +18,10 @@ export function narrowToFace(face: LpSession, o: Optimum, duals: ArrayLike<numbe
     }
     const limit = price > 0 ? row.lower : row.upper
     face.setRowBounds(i, limit, limit)
-    for (const [j, value] of row.entries) {
-      reduced[j]! -= price * value
-      sizes[j]! += Math.abs(price * value)
+    for (const entry of row.entries) {
+      const term = price * entry[1]
+      reduced[entry[0]]! -= term
+      sizes[entry[0]]! += Math.abs(term)
     }
   })
   lp.columns.forEach((column, j) => {

@@ -65,7 +65,7 @@ function touchColumns(o: Optimum, amounts: number[], valueSize: Float64Array | n
   const sizes = lp.columns.map((column) => Math.abs(column.cost))
   lp.rows.forEach((row, i) => {
     const price = outcome.rows[i]!.dual
-    if (price !== 0) for (const [j, value] of row.entries) sizes[j]! += Math.abs(price * value)
+    if (price !== 0) for (const entry of row.entries) sizes[entry[0]]! += Math.abs(price * entry[1])
   })
   for (let j = 0; j < lp.columns.length; j++) {
     const { lower, upper } = lp.columns[j]!
@@ -86,7 +86,7 @@ function touchRows(o: Optimum, amounts: number[]): void {
   for (let i = 0; i < lp.rows.length; i++) {
     const { lower, upper, entries } = lp.rows[i]!
     let size = 0
-    for (const [j, value] of entries) size += Math.abs(value * amounts[j]!)
+    for (const entry of entries) size += Math.abs(entry[1] * amounts[entry[0]]!)
     const { activity, dual } = outcome.rows[i]!
     o.rowAtLower[i] = lower > -Infinity && activity - lower <= TOUCH * (size + Math.abs(lower)) ? 1 : 0
     o.rowAtUpper[i] = upper < Infinity && upper - activity <= TOUCH * (size + Math.abs(upper)) ? 1 : 0

@@ -87,9 +87,11 @@ function unscale(
   for (let i = 0; i < m; i++) {
     const price = basis.rows[i] === 'basic' ? 0 : (dual[i]! * scaled.rowScale[i]!) / scaled.costScale
     let activity = 0
-    for (const [column, coefficient] of lp.rows[i]!.entries) {
-      activity += coefficient * amounts[column]!
-      priced[column]! += coefficient * price
+    const { entries } = lp.rows[i]!
+    for (let e = 0; e < entries.length; e++) {
+      const entry = entries[e]!
+      activity += entry[1] * amounts[entry[0]]!
+      if (price !== 0) priced[entry[0]]! += entry[1] * price
     }
     rows[i] = { activity, dual: price, basis: basis.rows[i]! }
   }

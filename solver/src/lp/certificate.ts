@@ -35,14 +35,16 @@ export function checkOutcome(lp: LinearProgram, outcome: Outcome): Certificate {
 }
 
 /** Σ a·x and Σ|a·x| of every row. */
-function activities(lp: LinearProgram, x: (column: number) => number): [Float64Array, Float64Array] {
+function activities(lp: LinearProgram, x: ArrayLike<number>): [Float64Array, Float64Array] {
   const sums = new Float64Array(lp.rows.length)
   const sizes = new Float64Array(lp.rows.length)
   for (let i = 0; i < lp.rows.length; i++) {
     let sum = 0
     let size = 0
-    for (const [column, value] of lp.rows[i]!.entries) {
-      const term = value * x(column)
+    const { entries } = lp.rows[i]!
+    for (let e = 0; e < entries.length; e++) {
+      const entry = entries[e]!
+      const term = entry[1] * x[entry[0]]!
       sum += term
       size += term < 0 ? -term : term
     }
@@ -53,14 +55,17 @@ function activities(lp: LinearProgram, x: (column: number) => number): [Float64A
 }
 
 /** Aᵀy and |A|ᵀ|y|. */
-function transposed(lp: LinearProgram, y: (row: number) => number): [Float64Array, Float64Array] {
+function transposed(lp: LinearProgram, y: ArrayLike<number>): [Float64Array, Float64Array] {
   const sums = new Float64Array(lp.columns.length)
   const sizes = new Float64Array(lp.columns.length)
   for (let i = 0; i < lp.rows.length; i++) {
-    const price = y(i)
+    const price = y[i]!
     if (price === 0) continue
-    for (const [column, value] of lp.rows[i]!.entries) {
-      const term = price * value
+    const { entries } = lp.rows[i]!
+    for (let e = 0; e < entries.length; e++) {
+      const entry = entries[e]!
+      const column = entry[0]
+      const term = price * entry[1]
       sums[column]! += term
       sizes[column]! += term < 0 ? -term : term
     }
@@ -69,12 +74,7 @@ function transposed(lp: LinearProgram, y: (row: number) => number): [Float64Arra
 }
 
 /** Relative violation of rows and bounds by the amounts `x`. */
-function primalViolation(
-  lp: LinearProgram,
-  x: (column: number) => number,
-  sums: Float64Array,
-  sizes: Float64Array,
-) {
+function primalViolation(lp: LinearProgram, x: ArrayLike<number>, sums: Float64Array, sizes: Float64Array) {
   let rowViolation = 0
   for (let i = 0; i < lp.rows.length; i++) {
     const { lower, upper } = lp.rows[i]!
@@ -85,7 +85,7 @@ function primalViolation(
   let boundViolation = 0
   for (let j = 0; j < lp.columns.length; j++) {
     const { lower, upper } = lp.columns[j]!
-    const value = x(j)
+    const value = x[j]!
     const short = outside(value, lower, upper)
     if (short > 0)
       boundViolation = Math.max(
@@ -116,8 +116,8 @@ function isComplete(lp: LinearProgram, outcome: OptimalOutcome): boolean {
 
 function checkOptimal(lp: LinearProgram, outcome: OptimalOutcome): Certificate {
   if (!isComplete(lp, outcome)) return { valid: false, tolerance: TOLERANCE, failures: ['incomplete'] }
-  const x = (j: number) => outcome.columns[j]!.value
-  const y = (i: number) => outcome.rows[i]!.dual
+  const x = Float64Array.from(outcome.columns, (column) => column.value)
+  const y = Float64Array.from(outcome.rows, (row) => row.dual)
   const [sums, sizes] = activities(lp, x)
   const [priced, pricedSizes] = transposed(lp, y)
   let consistency = 0
@@ -131,7 +131,7 @@ function checkOptimal(lp: LinearProgram, outcome: OptimalOutcome): Certificate {
 
   for (let j = 0; j < lp.columns.length; j++) {
     const { cost, lower, upper, integer } = lp.columns[j]!
-    const value = x(j)
+    const value = x[j]!
     const reduced = cost - priced[j]!
     const size = Math.abs(cost) + pricedSizes[j]!
     consistency = Math.max(consistency, ratio(Math.abs(outcome.columns[j]!.reducedCost - reduced), size))
@@ -155,7 +155,7 @@ function checkOptimal(lp: LinearProgram, outcome: OptimalOutcome): Certificate {
 
   for (let i = 0; i < lp.rows.length; i++) {
     const { lower, upper, entries } = lp.rows[i]!
-    const price = y(i)
+    const price = y[i]!
     consistency = Math.max(consistency, ratio(Math.abs(outcome.rows[i]!.activity - sums[i]!), sizes[i]!))
     if (price === 0) continue
     const limit = price > 0 ? lower : upper
@@ -193,7 +193,7 @@ function checkInfeasible(lp: LinearProgram, ray: number[]): Certificate {
     failures: [failure],
   })
   if (ray.length !== lp.rows.length || ray.some((y) => !Number.isFinite(y))) return fail('incomplete')
-  const [sums, sizes] = transposed(lp, (i) => ray[i]!)
+  const [sums, sizes] = transposed(lp, ray)
   let asked = 0
   let terms = 0
   for (let i = 0; i < lp.rows.length; i++) {
@@ -228,10 +228,8 @@ function checkUnbounded(lp: LinearProgram, point: number[], direction: number[])
     direction.some((v) => !Number.isFinite(v))
   )
     return { valid: false, tolerance: TOLERANCE, failures: ['incomplete'] }
-  const at = (j: number) => point[j]!
-  const along = (j: number) => direction[j]!
-  const [sums, sizes] = activities(lp, at)
-  const [moves, moveSizes] = activities(lp, along)
+  const [sums, sizes] = activities(lp, point)
+  const [moves, moveSizes] = activities(lp, direction)
   let drift = 0
   for (let i = 0; i < lp.rows.length; i++) {
     const wrong =
@@ -247,7 +245,7 @@ function checkUnbounded(lp: LinearProgram, point: number[], direction: number[])
     if ((step < 0 && lp.columns[j]!.lower > -Infinity) || (step > 0 && lp.columns[j]!.upper < Infinity))
       drift = 1
   }
-  const certificate = finish({ ...primalViolation(lp, at, sums, sizes), consistency: drift })
+  const certificate = finish({ ...primalViolation(lp, point, sums, sizes), consistency: drift })
   const descent = ratio(gain, terms)
   if (descent > TOLERANCE) return { ...certificate, descent }
   return { ...certificate, descent, valid: false, failures: [...certificate.failures, 'descent'] }

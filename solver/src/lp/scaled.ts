@@ -52,10 +52,12 @@ export function scaleProgram(lp: LinearProgram): ScaledProgram {
   const values = new Float64Array(size)
   let k = 0
   for (let i = 0; i < m; i++) {
-    for (const [column, value] of lp.rows[i]!.entries) {
-      if (value === 0) continue
-      indices[k] = column
-      values[k++] = value
+    const { entries } = lp.rows[i]!
+    for (let e = 0; e < entries.length; e++) {
+      const entry = entries[e]!
+      if (entry[1] === 0) continue
+      indices[k] = entry[0]
+      values[k++] = entry[1]
     }
     starts[i + 1] = k
   }

@@ -40,6 +40,28 @@ function boundProblem(
   return undefined
 }
 
+/** What is wrong with one coefficient of a row. */
+function entryProblem(lp: LinearProgram, position: number, column: number, value: number): ProgramProblem {
+  const { id } = lp.rows[position]!
+  const where: Where = { kind: 'row', id, position, field: 'entries' }
+  const name = lp.columns[column]?.id
+  if (name === undefined)
+    return {
+      code: 'unknownColumn',
+      where,
+      message: `Row ${id} names column ${column}, but there are ${lp.columns.length} columns.`,
+    }
+  if (!isNumber(value))
+    return { code: 'notANumber', where, message: `The coefficient of ${name} in row ${id} is not a number.` }
+  if (!Number.isFinite(value))
+    return {
+      code: 'infiniteCoefficient',
+      where,
+      message: `The coefficient of ${name} in row ${id} is infinite.`,
+    }
+  return { code: 'repeatedColumn', where, message: `Row ${id} names column ${name} twice.` }
+}
+
 /**
  * Everything that keeps a program from being a linear program at all; empty when it is one. Engines accept some of
  * these in silence (an infinite cost, a NaN) and then answer nonsense, so nothing is handed on before this.
@@ -78,35 +100,15 @@ export function findProblems(lp: LinearProgram): ProgramProblem[] {
     rowIds.add(id)
     const bound = boundProblem('row', id, position, row.lower, row.upper)
     if (bound) problems.push(bound)
-    for (const [column, value] of row.entries) {
-      if (!Number.isInteger(column) || column < 0 || column >= lp.columns.length) {
-        problems.push({
-          code: 'unknownColumn',
-          where: at('entries'),
-          message: `Row ${id} names column ${column}, but there are ${lp.columns.length} columns.`,
-        })
-        continue
+    for (const entry of row.entries) {
+      const column = entry[0]
+      const value = entry[1]
+      // The usual case first: this loop sees every coefficient of every program.
+      if (seenIn[column] !== position && column >= 0 && column < seenIn.length && value - value === 0) {
+        seenIn[column] = position
+        if (Number.isInteger(column)) continue
       }
-      const name = lp.columns[column]!.id
-      if (seenIn[column] === position)
-        problems.push({
-          code: 'repeatedColumn',
-          where: at('entries'),
-          message: `Row ${id} names column ${name} twice.`,
-        })
-      seenIn[column] = position
-      if (!isNumber(value))
-        problems.push({
-          code: 'notANumber',
-          where: at('entries'),
-          message: `The coefficient of ${name} in row ${id} is not a number.`,
-        })
-      else if (!Number.isFinite(value))
-        problems.push({
-          code: 'infiniteCoefficient',
-          where: at('entries'),
-          message: `The coefficient of ${name} in row ${id} is infinite.`,
-        })
+      problems.push(entryProblem(lp, position, column, value))
     }
   })
   return problems

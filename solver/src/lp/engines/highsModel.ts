@@ -36,6 +36,8 @@ export class HighsModel {
         presolve: 'off',
         solver: 'simplex',
         simplex_strategy: DUAL_SIMPLEX,
+        // The program comes scaled already.
+        simplex_scale_strategy: 0,
         // Coefficients at or below this are dropped in silence: 1e-12 is the least HiGHS takes (default 1e-9).
         small_matrix_value: 1e-12,
         primal_feasibility_tolerance: 1e-9,
