@@ -8,7 +8,8 @@ export class OutOfTime extends Error {
 
 /** The end of a call, handed from solve to solve. */
 export class Deadline {
-  private readonly until: number
+  /** As a time of `performance.now()`. */
+  readonly until: number
 
   constructor(milliseconds: number) {
     this.until = performance.now() + milliseconds

@@ -29,7 +29,7 @@ export async function answerOptimal(context: SolveContext, first: OptimalOutcome
     const cost = costOf(formulation, plain, outcome.objective)
     const standings = await standingsOf(context, outcome, session, amounts)
     const limits = standings.map((standing) => limitResultOf(formulation, standing, amounts, cost.least))
-    const prices = { formulation, optimal: outcome, session, deadline, solve }
+    const prices = { formulation, optimal: outcome, session, deadline }
     const blend = await withWindows(prices, plain)
     const leftOut = [...(await leftOutByPrice(prices, plain)), ...formulation.excluded]
     const proof = await proofOf(context, outcome)

@@ -1,6 +1,7 @@
 import type { BlendPart, LeftOut } from '@maslin/shared'
 import { buyInCosts, costWindows, type AnalysisSession } from '../analysis'
-import type { LinearProgram, OptimalOutcome, Outcome } from '../lp'
+import type { OptimalOutcome } from '../lp'
+import { LpSession } from '../lp/session'
 import type { Deadline } from './deadline'
 import type { Formulation } from './program'
 import { blendOf } from './report'
@@ -13,7 +14,6 @@ export interface PriceContext {
   optimal: OptimalOutcome
   session: AnalysisSession
   deadline: Deadline
-  solve: (lp: LinearProgram) => Promise<Outcome>
 }
 
 /** The blend with the range of each feed's price, currency per kg as fed, in which it stays the very same blend. */
@@ -55,13 +55,18 @@ export async function leftOutByPrice(context: PriceContext, blend: BlendPart[]):
     columns,
   })
   const leftOut: LeftOut[] = []
-  for (const { column, cost, entersBelow } of entries) {
-    const entry: LeftOut = { feedId: column, reason: 'price', pricePerKg: cost }
-    if (entersBelow !== null && entersBelow > 0) {
-      entry.buyInPrice = Math.min(entersBelow, cost)
-      Object.assign(entry, await enteringAt(context, blend, column, entry.buyInPrice))
+  const warm = await LpSession.open(formulation.program)
+  try {
+    for (const { column, cost, entersBelow } of entries) {
+      const entry: LeftOut = { feedId: column, reason: 'price', pricePerKg: cost }
+      if (entersBelow !== null && entersBelow > 0) {
+        entry.buyInPrice = Math.min(entersBelow, cost)
+        Object.assign(entry, enteringAt(context, warm, blend, column, entry.buyInPrice))
+      }
+      leftOut.push(entry)
     }
-    leftOut.push(entry)
+  } finally {
+    warm.dispose()
   }
   return leftOut.sort((a, b) => distance(a) - distance(b) || a.feedId.localeCompare(b.feedId))
 }
@@ -69,29 +74,33 @@ export async function leftOutByPrice(context: PriceContext, blend: BlendPart[]):
 const distance = ({ pricePerKg = 0, buyInPrice }: LeftOut): number =>
   buyInPrice === undefined ? Infinity : pricePerKg / buyInPrice
 
-async function enteringAt(
-  { formulation, deadline, solve }: PriceContext,
+/** Solves the mix again just below a price, from where the last solve ended. */
+function enteringAt(
+  { formulation, deadline }: PriceContext,
+  warm: LpSession,
   blend: BlendPart[],
   feedId: string,
   price: number,
-): Promise<Pick<LeftOut, 'thenShareAsFed' | 'replaces'>> {
+): Pick<LeftOut, 'thenShareAsFed' | 'replaces'> {
   const { program, diet } = formulation
   const column = diet.mix.find(({ feed }) => feed.id === feedId)!.column
-  for (const step of JUST_BELOW) {
-    deadline.left()
-    const columns = [...program.columns]
-    columns[column] = { ...columns[column]!, cost: price * (1 - step) }
-    const outcome = await solve({ columns, rows: program.rows })
-    if (outcome.status !== 'optimal') return {}
-    const then = blendOf(
-      formulation,
-      outcome.columns.map(({ value }) => value),
-    )
-    const entered = then.find((part) => part.feedId === feedId)
-    if (!entered) continue
-    return { thenShareAsFed: entered.shareAsFed, ...mostReplaced(blend, then) }
+  try {
+    for (const step of JUST_BELOW) {
+      deadline.left()
+      warm.setCost(column, price * (1 - step))
+      const outcome = warm.solve(deadline.until)
+      if (outcome.status !== 'optimal') return {}
+      const then = blendOf(
+        formulation,
+        outcome.columns.map(({ value }) => value),
+      )
+      const entered = then.find((part) => part.feedId === feedId)
+      if (entered) return { thenShareAsFed: entered.shareAsFed, ...mostReplaced(blend, then) }
+    }
+    return {}
+  } finally {
+    warm.setCost(column, program.columns[column]!.cost)
   }
-  return {}
 }
 
 function mostReplaced(before: BlendPart[], then: BlendPart[]): Pick<LeftOut, 'replaces'> {
