@@ -1,0 +1,27 @@
+export default {
+  title: 'Farm',
+  details: 'The farm',
+  fields: { name: 'Name', units: 'Weights and packages', currency: 'Currency' },
+  currencyNote:
+    'It can be changed only while the farm has no prices: a price keeps the currency it was given in.',
+  currencyFixed: 'The farm has prices, so its currency can no longer be changed. Nothing was changed.',
+  ownerOnly: 'Only an owner changes these.',
+  members: {
+    title: 'Members',
+    text: 'Who may see this farm, and what each may do.',
+    name: 'Name',
+    role: 'Role',
+    since: 'Member since',
+    you: 'you',
+    add: 'Add a member',
+    email: 'E-mail address of their account',
+    emailHint: 'They need an account already. Ask them to sign up first.',
+    added: '{name} is a member now.',
+    remove: 'Remove {name}',
+    removeTitle: 'Remove a member',
+    removeQuestion: '{name} will no longer see this farm. What they did stays on record.',
+    roleOf: 'Role of {name}',
+    roleChanged: '{name} is now: {role}.',
+    what: 'What the roles may do',
+  },
+} as const
