@@ -10,6 +10,13 @@ export interface Counted {
   unknown: boolean
 }
 
+/**
+ * Figures below this are nothing: a picogram in a kilogram. Kept as they are they would only spoil the arithmetic of the
+ * rows they stand in.
+ */
+export const NEGLIGIBLE = 1e-12
+export const orNothing = (value: number): number => (value < NEGLIGIBLE ? 0 : value)
+
 /** Reads contents of feeds; the same for every row of a program. */
 export type Composition = (feed: SolverFeed, nutrient: NutrientId, end: End) => Counted
 
@@ -35,14 +42,15 @@ export function compositionOf(input: FormulationInput): Composition {
     const known = feed.values[nutrient]
     if (known)
       return {
-        value:
+        value: orNothing(
           end === 'low'
             ? Math.min(known.value, known.low ?? known.value)
             : Math.max(known.value, known.high ?? known.value),
+        ),
         unknown: false,
       }
     if (end === 'low') return { value: 0, unknown: true }
     const assumed = input.assumedHighs[feed.class]?.[nutrient] ?? input.assumedHighs.any?.[nutrient]
-    return { value: Math.max(0, assumed?.value ?? highestOf(nutrient)), unknown: true }
+    return { value: orNothing(assumed?.value ?? highestOf(nutrient)), unknown: true }
   }
 }

@@ -1,6 +1,6 @@
 import type { FailedAnswer, FormulationInput, LeftOut, Limit, SolverFeed } from '@maslin/shared'
 import type { LinearProgram, LinearRow, SideName } from '../lp'
-import { compositionOf, type Composition } from './composition'
+import { compositionOf, orNothing, type Composition } from './composition'
 import { layOutDiet, REFERENCE_DRY_MATTER_KG, type Diet, type ForageSource } from './diet'
 import { isConstant, sameForm, type Form } from './forms'
 import { measureOf, type BoundSide, type Measure } from './measures'
@@ -140,11 +140,11 @@ const repeated = (ids: string[]): string[] => [...new Set(ids.filter((id, i) => 
 function addColumns(formulation: Formulation): void {
   const { diet, program, unpricedBaseFeeds } = formulation
   for (const { feed } of diet.mix)
-    program.columns.push({ id: feed.id, cost: feed.pricePerKg ?? 0, lower: 0, upper: Infinity })
+    program.columns.push({ id: feed.id, cost: orNothing(feed.pricePerKg ?? 0), lower: 0, upper: Infinity })
   for (const source of diet.base) {
     const { feed, wasteShare } = source
     if (feed.pricePerKg === undefined) unpricedBaseFeeds.push(feed.id)
-    const perKgEaten = (feed.pricePerKg ?? 0) / feed.dryMatter / (1 - wasteShare)
+    const perKgEaten = orNothing(feed.pricePerKg ?? 0) / feed.dryMatter / (1 - wasteShare)
     if (source.kind === 'ration') formulation.constantCost += perKgEaten * source.dryMatterKg
     else program.columns.push({ id: FORAGE_ROW, cost: perKgEaten, lower: 0, upper: Infinity })
   }
@@ -182,7 +182,7 @@ function addLimit(formulation: Formulation, limit: Limit, split: boolean): void 
     .filter((side) => limit[side] !== undefined)
     .map((side) => {
       const measure = measureOf(limit, side, formulation)
-      return { ...measure, side, bound: limit[side]!, movesSide: isConstant(measure.denominator) }
+      return { ...measure, side, bound: orNothing(limit[side]!), movesSide: isConstant(measure.denominator) }
     })
   const [first, second] = measures
   if (!first) return

@@ -106,7 +106,7 @@ export class MixBuilder {
     return this.eaten(fixed, { mode: 'fixed', ...item })
   }
 
-  private eaten(base: SolverFeed, item: BaseItem): MixBuilder {
+  eaten(base: SolverFeed, item: BaseItem): MixBuilder {
     return this.but({
       baseFeeds: [...this.input.baseFeeds, base],
       baseDiet: [
