@@ -10,6 +10,8 @@ import type { ScaledProgram } from './scaled'
 
 /** Above this size the dense factorisation would cost more than re-solving does. */
 const LARGEST_KERNEL = 250
+/** Rounding noise of a price, as a share of the terms that made it. */
+const PRICE_NOISE = 1e-13
 /** A pivot smaller than this, relative to the largest of its column at the start, makes the basis useless. */
 const SMALLEST_PIVOT = 1e-11
 
@@ -146,6 +148,7 @@ export function solveBasis(p: ScaledProgram, basis: Basis, kernel: Kernel): Basi
     restSize[r] = whole
   }
   const dual = new Float64Array(p.numRows)
+  const dualSize = new Float64Array(p.numRows)
   for (let c = 0; c < size; c++) {
     const j = kernel.columns[c]!
     let sum = 0
@@ -158,8 +161,14 @@ export function solveBasis(p: ScaledProgram, basis: Basis, kernel: Kernel): Basi
     value[j] = sum
     valueSize[j] = whole
     const cost = p.cost[j]!
-    if (cost !== 0)
-      for (let r = 0; r < size; r++) dual[kernel.rows[r]!]! += kernel.inverse[c * size + r]! * cost
+    if (cost === 0) continue
+    for (let r = 0; r < size; r++) {
+      const term = kernel.inverse[c * size + r]! * cost
+      dual[kernel.rows[r]!]! += term
+      dualSize[kernel.rows[r]!]! += Math.abs(term)
+    }
   }
+  // What is left of terms that cancel is no price: beside a price of exactly zero it would look like a wrong sign.
+  for (let i = 0; i < p.numRows; i++) if (Math.abs(dual[i]!) <= PRICE_NOISE * dualSize[i]!) dual[i] = 0
   return { value, valueSize, dual }
 }
