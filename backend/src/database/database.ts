@@ -38,8 +38,6 @@ export function openDatabase(url: string, { poolSize = 10, onStatement }: Databa
       bigIntAsNumber: true,
       insertIdAsNumber: true,
       checkNumberRange: true,
-      // Text that is kept for its hash must come back letter by letter; JSON columns are read by the mapper.
-      autoJsonMap: false,
       connectTimeout: 5000,
       charset: 'utf8mb4',
       collation: 'UTF8MB4_UNICODE_520_CI',

@@ -8,7 +8,7 @@ export const groups: Migration = {
     `CREATE TABLE IF NOT EXISTS book_tables (
       name ${word(40)} NOT NULL PRIMARY KEY,
       content_hash ${word(64)} NOT NULL,
-      content LONGTEXT NOT NULL CHECK (JSON_VALID(content)),
+      content LONGTEXT NOT NULL,
       loaded_at ${moment} NOT NULL
     ) ${options}`,
     `CREATE TABLE IF NOT EXISTS \`groups\` (

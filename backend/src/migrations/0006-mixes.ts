@@ -13,7 +13,7 @@ export const mixes: Migration = {
       batch_dry_matter_kg DOUBLE NOT NULL,
       prices_as_of DATE NULL,
       limits_version INT UNSIGNED NOT NULL,
-      limits LONGTEXT NOT NULL CHECK (JSON_VALID(limits)),
+      limits LONGTEXT NOT NULL,
       feed_count INT UNSIGNED NOT NULL,
       limit_count INT UNSIGNED NOT NULL,
       note VARCHAR(2000) NULL,
