@@ -72,6 +72,10 @@ describe('reading packages', () => {
     expect(parseWeight('50', 'lb')).toEqual({ ok: true, quantity: 50, unit: 'lb' })
   })
 
+  it('takes the decimal sign of the list', () => {
+    expect(parseWeight('1,250 kg', undefined, ',')).toEqual({ ok: true, quantity: 1.25, unit: 'kg' })
+  })
+
   it('tells the tonne from the short ton', () => {
     expect(parsePackageUnit('t')).toBe('tonne')
     expect(parsePackageUnit('tons')).toBe('shortTon')

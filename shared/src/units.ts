@@ -102,8 +102,11 @@ export type WeightReading =
   | { ok: true; quantity: number; unit: PackageUnit }
   | { ok: false; reason: 'empty' | 'notANumber' | 'unknownUnit' | 'noUnit' | 'notPositive' }
 
-/** Reads a weight such as `50 lb`, `1/2 ton`, `1 bu`; a bare unit means one of it. `fallback` is the unit where none stands. */
-export function parseWeight(text: string, fallback?: PackageUnit): WeightReading {
+/**
+ * Reads a weight such as `50 lb`, `1/2 ton`, `1 bu`; a bare unit means one of it. `fallback` is the unit where none
+ * stands, `decimal` the decimal sign as for `parseNumber`.
+ */
+export function parseWeight(text: string, fallback?: PackageUnit, decimal?: ',' | '.'): WeightReading {
   const cleaned = text.trim().replace(/[\u00a0\u202f]/g, ' ')
   if (!cleaned) return { ok: false, reason: 'empty' }
   const parts = /^(?:per\s+)?([+-]?[\d.,/\s']*)\s*([a-z#][a-z.\s]*)?$/i.exec(cleaned)
@@ -112,7 +115,7 @@ export function parseWeight(text: string, fallback?: PackageUnit): WeightReading
   const unit = unitText ? parsePackageUnit(unitText) : fallback
   if (!unit) return { ok: false, reason: unitText ? 'unknownUnit' : 'noUnit' }
   if (!numberText.trim()) return { ok: true, quantity: 1, unit }
-  const reading = parseNumber(numberText)
+  const reading = parseNumber(numberText, decimal)
   if (!reading.ok) return { ok: false, reason: 'notANumber' }
   return reading.value > 0
     ? { ok: true, quantity: reading.value, unit }

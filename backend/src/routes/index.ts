@@ -7,6 +7,7 @@ import { healthRoutes } from './health'
 import { memberRoutes } from './members'
 import { mixRoutes } from './mixes'
 import { offerRoutes } from './offers'
+import { priceImportRoutes } from './priceImports'
 import { reviewRoutes } from './reviews'
 import type { Route } from './route'
 import { scenarioRoutes } from './scenarios'
@@ -23,6 +24,7 @@ export const routes: readonly Route[] = [
   ...feedRoutes,
   ...supplierRoutes,
   ...offerRoutes,
+  ...priceImportRoutes,
   ...groupRoutes,
   ...mixRoutes,
   ...solveRoutes,
