@@ -5,6 +5,7 @@ import { ConfigError, readConfig, type Config } from './config'
 import { openDatabase, type Database } from './database/database'
 import { migrate } from './database/migrate'
 import { checkServerSettings } from './database/settings'
+import { loadDemo } from './demo/loadDemo'
 import { loadBookFeeds } from './services/bookFeeds'
 import { loadRequirementLibrary, type RequirementLibrary } from './services/requirementLibrary'
 import { SolvingPool } from './solving/pool'
@@ -20,6 +21,8 @@ async function start(): Promise<void> {
     queueLimit: config.solveQueue,
     onCrash: (error) => logger.error({ err: error }, 'a solve worker ended'),
   })
+  const signIns = await loadDemo({ config, database, solving, requirements })
+  if (signIns) logger.info({ people: signIns.length }, 'demo farms loaded')
   let open = true
   const app = createApp({ config, database, solving, requirements, logger, isOpen: () => open })
   const server = app.listen(config.port, config.host, (error) => {

@@ -20,6 +20,11 @@ export function accounts(database: Database, transaction: Transaction | null = n
       return row ? plain<UserRow>(row) : undefined
     },
 
+    /** Whether there is any account at all. */
+    async any(): Promise<boolean> {
+      return (await models.users.findOne({ attributes: ['id'], transaction })) !== null
+    },
+
     async users(ids: readonly string[]): Promise<UserRow[]> {
       return (await models.users.findAll({ where: { id: [...ids] }, transaction })).map(plain<UserRow>)
     },
