@@ -1,5 +1,6 @@
 import { createRequire } from 'node:module'
 import { dirname, join } from 'node:path'
+import { stripVTControlCharacters } from 'node:util'
 import { inProject } from './paths.mjs'
 import { run } from './processes.mjs'
 import { say, secondsSince, SetupError } from './say.mjs'
@@ -42,11 +43,15 @@ export async function buildFrontend() {
     {
       quiet: true,
       cwd: inProject('frontend'),
-      env: { ...process.env, NODE_ENV: 'production', NO_COLOR: '1' },
+      env: { ...process.env, NODE_ENV: 'production' },
     },
   )
-  if (code !== 0)
-    throw new SetupError(`The pages could not be built:\n${output.trim().split('\n').slice(-30).join('\n')}`)
+  if (code !== 0) {
+    const lines = stripVTControlCharacters(output).trim().split('\n')
+    // The bundler's own stack says nothing about our sources.
+    const message = lines.filter((line) => !/^ {4}at /.test(line)).slice(-30)
+    throw new SetupError(`The pages could not be built:\n${message.join('\n')}`)
+  }
   noteBuiltFrom(outDirectory, digest)
   say(`Built the pages in ${secondsSince(start)}.`)
 }
