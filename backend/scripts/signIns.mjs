@@ -2,8 +2,10 @@ import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { say } from './say.mjs'
 
+/** @typedef {{ farm: string, role: string, email: string, password: string }} SignIn */
+
 /**
- * Prints where Maslin is to be found and, as long as there is a demo farm, who may sign in to it. The server
+ * Prints where Maslin is to be found and, as long as there are demo farms, who may sign in to them. The server
  * writes that list with the passwords it generated at its first start.
  * @param {number} port
  * @param {string} directory Maslin's data directory
@@ -11,19 +13,20 @@ import { say } from './say.mjs'
 export function printAddress(port, directory) {
   say(`\nMaslin is running at  ${process.env.PUBLIC_URL || `http://localhost:${port}`}\n`)
   const signIns = demoSignIns(directory)
-  if (signIns.length === 0) return
-  say('Sign in to the demo farm as')
-  const width = Math.max(...signIns.map((it) => it.email.length))
   const roleWidth = Math.max(...signIns.map((it) => it.role.length))
-  for (const { role, email, password } of signIns) {
-    say(`  ${role.padEnd(roleWidth)}  ${email.padEnd(width)}  password ${password}`)
+  const emailWidth = Math.max(...signIns.map((it) => it.email.length))
+  for (const farm of new Set(signIns.map((it) => it.farm))) {
+    say(`Sign in to ${farm} (invented) as`)
+    for (const { role, email, password } of signIns.filter((it) => it.farm === farm)) {
+      say(`  ${role.padEnd(roleWidth)}  ${email.padEnd(emailWidth)}  password  ${password}`)
+    }
+    say('')
   }
-  say('')
 }
 
 /**
  * @param {string} directory
- * @returns {{ role: string, email: string, password: string }[]}
+ * @returns {SignIn[]} none where there is no demo
  */
 function demoSignIns(directory) {
   if (process.env.MASLIN_DEMO === 'off') return []

@@ -13,8 +13,8 @@ export interface Application {
   /** `http://127.0.0.1:port`, without a slash at the end. */
   origin: string
   database: TestDatabase
-  /** Who may sign in to the demo farm; empty without it. */
-  signIns: { role: string; email: string; password: string }[]
+  /** Who may sign in to the demo farms; empty without them. */
+  signIns: { farm: string; name: string; role: string; email: string; password: string }[]
   /** What the server has logged so far. */
   log(): string
   stop(): Promise<void>
