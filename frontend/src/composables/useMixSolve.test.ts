@@ -37,7 +37,10 @@ function slowSolver() {
 function answerSaying(detail: string): SolveResponse {
   const answer = { version: 1, status: 'stopped', leftOut: [], cautions: [], reasons: [], detail } as const
   // Nothing here reads the input.
-  return { input: {} as SolveResponse['input'], answer: { ...answer, leftOut: [], cautions: [], reasons: [] } }
+  return {
+    input: {} as SolveResponse['input'],
+    answer: { ...answer, leftOut: [], cautions: [], reasons: [] },
+  }
 }
 
 const settle = async () => {
