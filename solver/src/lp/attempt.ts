@@ -119,7 +119,9 @@ function infeasible(lp: LinearProgram, scaled: ScaledProgram, ray: Float64Array 
   }
   const elastic = prove(elasticProgram(lp), work)
   if (elastic) {
-    const outcome = claim(elastic.rows.map((row) => row.dual))
+    // Its prices carry rounding too: one of −1e-16 would name an end that the row does not have.
+    const prices = Float64Array.from(elastic.rows, (row, i) => row.dual / scaled.rowScale[i]!)
+    const outcome = claim(cleanRay(lp, scaled, prices, 1))
     if (outcome.certificate.valid) return outcome
     if (scaled.integrality) return accept(claim([]), work)
   }
