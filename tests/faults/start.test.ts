@@ -34,7 +34,7 @@ afterEach(async () => {
   rmSync(directory, { recursive: true, force: true })
 })
 
-/** Runs what `npm start` runs, on data and a port of the test's own. */
+/** Runs what `npm start` runs, on data and a port of the test's own, without the demo unless asked for. */
 function start(env: Record<string, string> = {}): Start {
   const child = spawn(process.execPath, [inProject('backend/scripts/start.mjs')], {
     cwd: inProject(),
@@ -45,6 +45,7 @@ function start(env: Record<string, string> = {}): Start {
       npm_lifecycle_event: '',
       MASLIN_DATA_DIR: directory,
       PORT: String(port),
+      MASLIN_DEMO: 'off',
       ...env,
     },
     stdio: ['ignore', 'pipe', 'pipe'],
@@ -86,9 +87,10 @@ const isReady = async () => (await fetch(`http://127.0.0.1:${port}/api/v1/ready`
 
 describe('npm start', () => {
   it('serves, says where, and on SIGTERM ends everything it started', async () => {
-    const maslin = start()
+    const maslin = start({ MASLIN_DEMO: 'on' })
     await maslin.says(running)
     expect(maslin.output()).toContain(`http://localhost:${port}`)
+    expect(maslin.output()).toMatch(/ owner +\S+@\S+ +password +\S{12,}/)
     expect(await isReady()).toBe(200)
     const server = pidIn('server.pid') ?? 0
     expect(commandOf(server)).toContain('server.js')
