@@ -32,8 +32,8 @@ export function randomMix(seed: number, family: Family): LinearProgram {
     lower: 0,
     upper: Infinity,
   }))
-  const hidden = Array.from({ length: feeds }, () => (random() < 0.3 ? random() : 0))
-  if (hidden.every((share) => share === 0)) hidden[0] = 1
+  const hidden = Array.from({ length: feeds }, (): number => (random() < 0.3 ? random() : 0))
+  if (!hidden.some((share) => share > 0)) hidden[0] = 1
   const sum = hidden.reduce((a, b) => a + b, 0)
   const amounts = hidden.map((share) => (share / sum) * total)
   const rows: LinearProgram['rows'] = [
@@ -44,7 +44,7 @@ export function randomMix(seed: number, family: Family): LinearProgram {
     const unit = family === 'badly scaled' ? 10 ** between(-6, 5) : 10 ** between(-2, 1)
     const content = columns.map(() => (random() < 0.85 ? round(unit * between(0, 4)) : 0))
     const supply = content.reduce((whole, value, j) => whole + value * amounts[j]!, 0)
-    const slack = family === 'degenerate' && random() < 0.5 ? 0 : between(0.01, 0.15)
+    const slack: number = family === 'degenerate' && random() < 0.5 ? 0 : between(0.01, 0.15)
     const entries = content.flatMap((value, j): [number, number][] => (value === 0 ? [] : [[j, value]]))
     if (family === 'ratios' && i % 3 === 2) {
       const other = rows[rows.length - 1]!

@@ -1,0 +1,173 @@
+import { execFile } from 'node:child_process'
+import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises'
+import { tmpdir } from 'node:os'
+import path from 'node:path'
+import { promisify } from 'node:util'
+import type { LinearProgram } from '@maslin/solver'
+
+/**
+ * GLPK's `glpsol` as an outside reference, by its own plain-text formats (GLPK reference manual, appendix "GLPK LP/MIP
+ * format"): `--wglp` and `--glp` for problems, `-w` for solutions, all with 15 digits.
+ */
+
+const run = promisify(execFile)
+
+/** Fails with what to do where GLPK is missing: a comparison that is skipped compares nothing. */
+export async function requireGlpsol(): Promise<void> {
+  try {
+    await run('glpsol', ['--version'])
+  } catch {
+    throw new Error(
+      'These tests compare with GLPK, which is not here. Install it: apt-get install -y glpk-utils',
+    )
+  }
+}
+
+export interface GlpkSolution {
+  status: 'optimal' | 'infeasible' | 'unbounded' | 'other'
+  objective: number
+  rows: { status: string; activity: number; dual: number }[]
+  columns: { status: string; value: number; reducedCost: number }[]
+}
+
+export interface GlpkProblem {
+  lp: LinearProgram
+  /** The file's own sense; `lp` always minimises, its costs negated where the file maximises. */
+  maximises: boolean
+  /** Added to the objective of `lp` (in the file's sense). */
+  constant: number
+}
+
+async function inFolder<Result>(use: (folder: string) => Promise<Result>): Promise<Result> {
+  const folder = await mkdtemp(path.join(tmpdir(), 'glpk-'))
+  try {
+    return await use(folder)
+  } finally {
+    await rm(folder, { recursive: true, force: true })
+  }
+}
+
+/** Lets glpsol read a problem file (`['-m', file]` or `['--mps', file]`) and returns what it read. */
+export function readProblem(args: string[]): Promise<GlpkProblem> {
+  return inFolder(async (folder) => {
+    const file = path.join(folder, 'problem.glp')
+    await run('glpsol', [...args, '--check', '--wglp', file])
+    return parseProblem(await readFile(file, 'utf8'))
+  })
+}
+
+/** Solves what glpsol reads itself from a problem file. */
+export function solveFile(args: string[]): Promise<GlpkSolution> {
+  return inFolder(async (folder) => {
+    const file = path.join(folder, 'solution.txt')
+    await run('glpsol', [...args, '--nopresol', '-w', file])
+    return parseSolution(await readFile(file, 'utf8'))
+  })
+}
+
+/** Solves a program of ours with glpsol (presolve off, so that it says which of infeasible and unbounded). */
+export function solveWithGlpsol(lp: LinearProgram): Promise<GlpkSolution> {
+  return inFolder(async (folder) => {
+    const file = path.join(folder, 'problem.glp')
+    await writeFile(file, formatProblem(lp))
+    const solution = path.join(folder, 'solution.txt')
+    await run('glpsol', ['--glp', file, '--nopresol', '-w', solution])
+    return parseSolution(await readFile(solution, 'utf8'))
+  })
+}
+
+function bounds(lower: number, upper: number): string {
+  if (lower === upper) return `s ${lower}`
+  if (lower > -Infinity && upper < Infinity) return `d ${lower} ${upper}`
+  if (lower > -Infinity) return `l ${lower}`
+  return upper < Infinity ? `u ${upper}` : 'f'
+}
+
+function readBounds([type, first, second]: string[]): { lower: number; upper: number } {
+  switch (type) {
+    case 's':
+      return { lower: Number(first), upper: Number(first) }
+    case 'd':
+      return { lower: Number(first), upper: Number(second) }
+    case 'l':
+      return { lower: Number(first), upper: Infinity }
+    case 'u':
+      return { lower: -Infinity, upper: Number(first) }
+    case 'f':
+      return { lower: -Infinity, upper: Infinity }
+    default:
+      throw new Error(`GLPK wrote an unknown bound type: ${type}`)
+  }
+}
+
+function formatProblem(lp: LinearProgram): string {
+  const coefficients = lp.rows.flatMap((row, i) =>
+    row.entries.map(([j, value]) => `a ${i + 1} ${j + 1} ${value}`),
+  )
+  return [
+    `p lp min ${lp.rows.length} ${lp.columns.length} ${coefficients.length}`,
+    ...lp.rows.map((row, i) => `i ${i + 1} ${bounds(row.lower, row.upper)}`),
+    ...lp.columns.map((column, j) => `j ${j + 1} ${bounds(column.lower, column.upper)}`),
+    ...lp.columns.flatMap((column, j) => (column.cost === 0 ? [] : [`a 0 ${j + 1} ${column.cost}`])),
+    ...coefficients,
+    'e o f',
+    '',
+  ].join('\n')
+}
+
+function parseProblem(text: string): GlpkProblem {
+  const lines = text.split('\n').map((line) => line.split(' '))
+  const [, kind, sense, rowCount, columnCount] = lines.find(([tag]) => tag === 'p')!
+  if (kind !== 'lp') throw new Error('Only linear programs without whole numbers are compared here.')
+  const sign = sense === 'max' ? -1 : 1
+  // Rows and columns without a descriptor are equalities to zero and non-negative amounts.
+  const lp: LinearProgram = {
+    rows: Array.from({ length: Number(rowCount) }, (_, i) => ({
+      id: `row ${i + 1}`,
+      lower: 0,
+      upper: 0,
+      entries: [],
+    })),
+    columns: Array.from({ length: Number(columnCount) }, (_, j) => ({
+      id: `column ${j + 1}`,
+      cost: 0,
+      lower: 0,
+      upper: Infinity,
+    })),
+  }
+  let constant = 0
+  for (const [tag, first, second, ...rest] of lines) {
+    if (tag === 'i') Object.assign(lp.rows[Number(first) - 1]!, readBounds([second!, ...rest]))
+    else if (tag === 'j') Object.assign(lp.columns[Number(first) - 1]!, readBounds([second!, ...rest]))
+    else if (tag === 'n' && first === 'i') lp.rows[Number(second) - 1]!.id = `${rest.join(' ')} (${second})`
+    else if (tag === 'n' && first === 'j')
+      lp.columns[Number(second) - 1]!.id = `${rest.join(' ')} (${second})`
+    else if (tag === 'a') {
+      const [row, column, value] = [Number(first), Number(second), Number(rest[0])]
+      if (row > 0) lp.rows[row - 1]!.entries.push([column - 1, value])
+      else if (column > 0) lp.columns[column - 1]!.cost = sign * value
+      else constant = value
+    }
+  }
+  return { lp, maximises: sign < 0, constant }
+}
+
+function parseSolution(text: string): GlpkSolution {
+  const solution: GlpkSolution = { status: 'other', objective: NaN, rows: [], columns: [] }
+  for (const [tag, first, second, third, fourth, fifth, sixth] of text
+    .split('\n')
+    .map((line) => line.split(' '))) {
+    if (tag === 's' && first === 'bas') {
+      const primal = fourth
+      const dual = fifth
+      if (primal === 'f' && dual === 'f') solution.status = 'optimal'
+      else if (primal === 'n') solution.status = 'infeasible'
+      else if (dual === 'n') solution.status = 'unbounded'
+      solution.objective = Number(sixth)
+    } else if (tag === 'i')
+      solution.rows.push({ status: second!, activity: Number(third), dual: Number(fourth) })
+    else if (tag === 'j')
+      solution.columns.push({ status: second!, value: Number(third), reducedCost: Number(fourth) })
+  }
+  return solution
+}
