@@ -146,12 +146,16 @@ class CurveWork {
   ): Promise<number | undefined> {
     const outcome = await this.solve(formulate(input).program)
     if (outcome.status !== 'optimal') return undefined
-    const limits = input.limits.map((other) => (other === limit ? { ...other, [sideName]: 0 } : other))
+    const limits = input.limits.map((other) =>
+      other === limit ? { ...other, [sideName]: limit[sideName === 'min' ? 'max' : 'min'] } : other,
+    )
     const { sides } = formulate({ ...input, limits }, { split: true })
     const side = sides.find(({ limit: { id }, side: name }) => id === limit.id && name === sideName)!
     const amounts = outcome.columns.map(({ value }) => value)
     const denominator = valueOf(side.denominator, amounts)
-    return denominator > 0 ? valueOf(side.numerator, amounts) / denominator : undefined
+    if (denominator <= 0) return undefined
+    const reading = valueOf(side.numerator, amounts) / denominator
+    return sideName === 'min' ? Math.min(reading, side.bound) : Math.max(reading, side.bound)
   }
 
   private async alongRightHandSide(

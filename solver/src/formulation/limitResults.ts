@@ -1,7 +1,7 @@
 import type { LimitResult, Margin } from '@maslin/shared'
 import { eatenOf, knowledgeOf, type Eaten, type Knowledge } from './diet'
 import { valueOf } from './forms'
-import { isBinding, type Margins } from './margins'
+import { isBinding, sizeOf, type Margins } from './margins'
 import { batchScale, endOf } from './measures'
 import type { Formulation, LimitSide } from './program'
 
@@ -55,7 +55,7 @@ export function limitResultOf(
     const scaled = (margin: Margin): Margin =>
       margin.perUnit === undefined
         ? margin
-        : { ...margin, perUnit: tidy(margin.perUnit * scale, reported.bound, leastCost) }
+        : { ...margin, perUnit: tidy(margin.perUnit * scale, sizeOf(reported), leastCost) }
     result.raise = scaled(chosen.margins.raise)
     result.lower = scaled(chosen.margins.lower)
     const prices = [result.raise.perUnit ?? 0, result.lower.perUnit ?? 0]
@@ -91,8 +91,8 @@ function readingOf(side: LimitSide, amounts: number[]): number {
   return numerator > 0 ? BEYOND_ANY_LIMIT : 0
 }
 
-const tidy = (price: number, bound: number, cost: number): number =>
-  Math.abs(price) * Math.max(Math.abs(bound), 1e-12) <= NO_PRICE * Math.abs(cost) ? 0 : price
+const tidy = (price: number, size: number, cost: number): number =>
+  Math.abs(price) * size <= NO_PRICE * Math.abs(cost) ? 0 : price
 
 function differs(raise: Margin, lower: Margin): boolean {
   if (raise.impossible !== lower.impossible) return true

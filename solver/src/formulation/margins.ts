@@ -44,8 +44,8 @@ export async function marginsOf(
   return { raise: await at(1), lower: await at(-1) }
 }
 
-/** A size of the limit to measure steps by, in its own unit. */
-function sizeOf(side: LimitSide): number {
+/** A size to measure moves of the limit by, in its own unit: the limit itself, or what its feeds commonly come to. */
+export function sizeOf(side: LimitSide): number {
   if (side.bound > 0) return side.bound
   const whole =
     side.denominator.constant + side.denominator.terms.reduce((sum, term) => sum + Math.abs(term), 0)

@@ -44,6 +44,9 @@ export interface BuildOptions {
 export type BuildResult =
   { ok: true; formulation: Formulation } | { ok: false; reasons: InvalidReason[]; excluded: LeftOut[] }
 
+/** A difference below this share of its terms is none. */
+const CANCELLED = 1e-14
+
 /** Rows that are not the keeper's to loosen. */
 export const DRY_MATTER_ROW = 'dryMatter'
 export const FORAGE_ROW = 'forage'
@@ -120,6 +123,9 @@ function problemsOf(input: FormulationInput, usable: SolverFeed[]): InvalidReaso
       })
   if (input.baseDiet.filter((item) => item.mode === 'freeChoice').length > 1)
     reasons.push({ code: 'noBaseDiet', detail: 'At most one feed of the base diet can be free choice.' })
+  for (const { id, enabled, min, max } of input.limits)
+    if (enabled && min !== undefined && max !== undefined && min > max)
+      reasons.push({ code: 'badLimit', limitId: id, detail: 'The minimum lies above the maximum.' })
   for (const limit of input.limits)
     if (
       limit.enabled &&
@@ -221,8 +227,10 @@ type Bounded = Pick<LimitSide, 'numerator' | 'denominator'>
 function rowOf(id: string, { numerator, denominator }: Bounded, bound: number): LinearRow {
   const entries: [number, number][] = []
   numerator.terms.forEach((term, column) => {
-    const value = term - bound * denominator.terms[column]!
-    if (value !== 0) entries.push([column, value])
+    const allowed = bound * denominator.terms[column]!
+    const value = term - allowed
+    // What is left of two equal numbers is rounding: a feed that lies on the limit by itself does not count.
+    if (Math.abs(value) > CANCELLED * (Math.abs(term) + Math.abs(allowed))) entries.push([column, value])
   })
   return { id, lower: sideValue({ numerator, denominator }, bound), upper: Infinity, entries }
 }

@@ -18,6 +18,8 @@ const ROUNDS = 3
 const MOST_ROUNDS = 20
 /** Figures of a proposal, so that a person can read it; rounded to the safe side. */
 const FIGURES = 4
+/** Part of the last figure that is rounding of the solver; the rounded proposal is solved again in any case. */
+const ROUNDING = 1e-3
 
 interface Ranked extends Proposal {
   size: number
@@ -155,7 +157,7 @@ function roundedOut(to: number, side: BoundSide): number {
   if (to <= 0) return 0
   const unit = 10 ** (Math.floor(Math.log10(to)) - FIGURES + 1)
   const steps = to / unit
-  const rounded = (side === 'min' ? Math.floor(steps + 1e-9) : Math.ceil(steps - 1e-9)) * unit
+  const rounded = (side === 'min' ? Math.floor(steps + ROUNDING) : Math.ceil(steps - ROUNDING)) * unit
   return Number(rounded.toPrecision(FIGURES))
 }
 

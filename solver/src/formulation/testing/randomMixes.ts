@@ -144,7 +144,7 @@ function randomLimit(id: string, input: FormulationInput, random: () => number):
       ...placeholder,
     }
   }
-  return { id, kind: 'rate', ...placeholder }
+  return { id, kind: input.basis === 'besideForage' && draw < 0.95 ? 'intake' : 'rate', ...placeholder }
 }
 
 /** Gives a limit the bounds that the anchor meets, on one side or both. */
