@@ -1,14 +1,23 @@
 import { mkdtempSync, readFileSync, rmSync, statSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
-import type { Group, MixSummary, Scenario, ScenarioSummary, Session, WaitingReview } from '@maslin/shared'
+import type {
+  Group,
+  Mix,
+  MixSummary,
+  Scenario,
+  ScenarioSummary,
+  Session,
+  WaitingReview,
+} from '@maslin/shared'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { loadDemo, type DemoServices, type DemoSignIn } from '../../backend/src/demo/loadDemo'
 import { loadBookFeeds } from '../../backend/src/services/bookFeeds'
 import { loadRequirementLibrary } from '../../backend/src/services/requirementLibrary'
 import { SolvingPool } from '../../backend/src/solving/pool'
 import { startTestApp, visit, type TestApp, type Visitor } from '../support/app'
-import { bodyOf, signUp, solve, type TestFarm } from '../support/farm'
+import { bodyOf, draftOf, solve, type TestFarm } from '../support/farm'
+import { signUp } from '../support/people'
 
 describe('the demo farm', () => {
   let test: TestApp
@@ -88,16 +97,7 @@ describe('the demo farm', () => {
       const farm = { owner: visitor, at: at(session, name) } as TestFarm
       const { items } = bodyOf<{ items: MixSummary[] }>(await visitor.get(`${farm.at}/mixes`), 200)
       for (const { id, name: mix } of items) {
-        const {
-          id: _id,
-          version: _version,
-          updatedAt: _updated,
-          ...draft
-        } = bodyOf<never>(await visitor.get(`${farm.at}/mixes/${id}`), 200) as {
-          id: string
-          version: number
-          updatedAt: string
-        } & Parameters<typeof solve>[1]
+        const draft = draftOf(bodyOf<Mix>(await visitor.get(`${farm.at}/mixes/${id}`), 200))
         const { answer } = await solve(farm, draft)
         expect(answer.status, `${mix}: ${JSON.stringify(answer)}`).toBe('optimal')
       }

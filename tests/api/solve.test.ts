@@ -1,7 +1,8 @@
 import type { Curve, Group, MixDraft, OptimalAnswer, Problem } from '@maslin/shared'
 import { solveMix } from '@maslin/solver'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { addGroup, firstDraft, signUp, solve, startTestFarm, type TestFarm } from '../support/farm'
+import { addGroup, firstDraft, solve, startTestFarm, type TestFarm } from '../support/farm'
+import { signUp } from '../support/people'
 
 const optimal = (answer: { status: string }): OptimalAnswer => {
   expect(answer.status, JSON.stringify(answer)).toBe('optimal')

@@ -10,13 +10,20 @@ const workerFile = fileURLToPath(new URL('./workers/troubled.mjs', import.meta.u
 /** The troubled worker reads only what it is to do. */
 const order = (name: string, more: object = {}) => ({ name, ...more }) as unknown as FormulationInput
 
-const timed = async (work: Promise<unknown>) => {
+interface Timed {
+  value?: unknown
+  error?: unknown
+  ms: number
+}
+
+const timed = async (work: Promise<unknown>): Promise<Timed> => {
   const start = performance.now()
-  const outcome = await work.then(
-    (value) => ({ value }),
-    (error: unknown) => ({ error }),
-  )
-  return { ...outcome, ms: performance.now() - start }
+  try {
+    const value = await work
+    return { value, ms: performance.now() - start }
+  } catch (error) {
+    return { error, ms: performance.now() - start }
+  }
 }
 
 describe('solving pool under trouble', () => {

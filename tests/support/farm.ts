@@ -3,14 +3,17 @@ import type {
   FirstMix,
   Group,
   GroupCreate,
+  Mix,
   MixDraft,
   Scenario,
-  Session,
+  Role,
   SolveResponse,
+  Supplier,
 } from '@maslin/shared'
 import { loadBookFeeds } from '../../backend/src/services/bookFeeds'
 import { SolvingPool } from '../../backend/src/solving/pool'
-import { startTestApp, visit, type TestApp, type TestAppOptions, type Visitor } from './app'
+import { startTestApp, type TestApp, type TestAppOptions, type Visitor } from './app'
+import { signUp, type Person } from './people'
 
 /** Prices per 50 lb bag, USD: invented. */
 const bagPrices: Record<string, string> = {
@@ -43,10 +46,13 @@ export interface TestFarm {
 /** A farm with the feeds of a first mix and a price for each, over an API whose workers really solve. */
 export async function startTestFarm(options: TestAppOptions = {}): Promise<TestFarm> {
   const pool = await SolvingPool.create({ workers: 1, queueLimit: 50 })
-  const test = await startTestApp({ solving: pool, ...options })
+  return furnishFarm(await startTestApp({ solving: pool, ...options }), pool)
+}
+
+/** The same on an API that is there already. */
+export async function furnishFarm(test: TestApp, pool: SolvingPool): Promise<TestFarm> {
   await loadBookFeeds(test.database, test.config.libraryDirectory)
-  const { visitor: owner, session } = await signUp(test, 'owner')
-  const farmId = session.memberships[0]?.farm.id ?? ''
+  const { visitor: owner, farmId } = await signUp(test, 'Odell Marsh')
   const at = `/api/v1/farms/${farmId}`
   const copied = await owner.post(`${at}/feeds/copies`).send({ bookKeys: Object.keys(bagPrices) })
   const feeds = new Map(bodyOf<{ items: Feed[] }>(copied).items.map((feed) => [feed.bookKey ?? '', feed]))
@@ -87,26 +93,11 @@ export function bodyOf<T>(answer: { status: number; body: unknown }, status = 20
   return answer.body as T
 }
 
-let people = 0
-
-/** Somebody new with a farm of their own, signed in. */
-export async function signUp(test: TestApp, name: string): Promise<{ visitor: Visitor; session: Session }> {
-  const visitor = visit(test)
-  people += 1
-  const answer = await visitor.post('/api/v1/auth/sign-up').send({
-    name,
-    email: `${name}.${people}@example.test`,
-    password: 'a long enough phrase',
-    farmName: `Farm of ${name}`,
-  })
-  return { visitor, session: bodyOf<Session>(answer) }
-}
-
 /** Somebody new who holds a role on the farm. */
-export async function addMember({ test, owner, at }: TestFarm, role: string): Promise<Visitor> {
-  const { visitor, session } = await signUp(test, role)
-  bodyOf(await owner.post(`${at}/members`).send({ email: session.user.email, role }))
-  return visitor
+export async function addMember({ test, owner, at }: TestFarm, role: Role): Promise<Person> {
+  const person = await signUp(test, `Some ${role}`)
+  bodyOf(await owner.post(`${at}/members`).send({ email: person.email, role }))
+  return person
 }
 
 /** Ewes with one lamb, four weeks before lambing, on free-choice hay. */
@@ -140,6 +131,10 @@ export async function solve(farm: TestFarm, draft: MixDraft, more: object = {}):
 export async function saveScenario(farm: TestFarm, draft: MixDraft, name = 'Winter'): Promise<Scenario> {
   return bodyOf<Scenario>(await farm.owner.post(`${farm.at}/scenarios`).send({ name, draft }))
 }
+
+/** A saved mix as the bench takes it. */
+export const draftOf = ({ id: _id, version: _version, updatedAt: _updatedAt, ...draft }: Mix): MixDraft =>
+  draft
 
 /** The header that says which version is changed. */
 export const ifMatch = ({ version }: { version: number }) => ({ 'If-Match': `"${version}"` })
