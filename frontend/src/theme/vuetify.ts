@@ -27,6 +27,7 @@ function themeOf(tokens: Record<keyof typeof light, string>, isDark: boolean): T
     variables: {
       'border-color': tokens.line,
       'border-opacity': 1,
+      'high-emphasis-opacity': 1,
       // Vuetify's own 0.6 is too faint for words on paper.
       'medium-emphasis-opacity': 0.76,
       'hover-opacity': 0.06,

@@ -1,5 +1,5 @@
 export default {
-  menu: 'Your account',
+  menu: '{initials}: your account',
   signOut: 'Sign out',
   appearance: { label: 'Appearance', system: 'As the device', light: 'Light', dark: 'Dark' },
   fields: {

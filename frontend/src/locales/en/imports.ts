@@ -47,7 +47,7 @@ export default {
   fields: {
     feed: 'Feed',
     supplier: 'Supplier',
-    package: 'Package, such as 50 lb',
+    package: 'Package',
     quantity: 'Quantity in a package',
     unit: 'Unit',
     price: 'Price',
@@ -64,6 +64,7 @@ export default {
   unknownText: 'Say which feed each name means, or leave its rows out.',
   unknownLabel: 'Feed for “{name}”',
   leaveOut: 'Leave its rows out',
+  leftOutByHand: 'left out by hand',
   undecided: 'not decided: its rows are errors',
   states: { new: 'new', changed: 'changed', same: 'same', error: 'error', leftOut: 'left out' },
   counts: {

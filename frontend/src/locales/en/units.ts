@@ -7,7 +7,7 @@ export default {
   shortTon: 'short ton',
   tonne: 'tonne',
   bushel: 'bu',
-  us: 'US customary (lb, bu, short ton)',
+  us: 'US (lb, bushel, ton)',
   metric: 'Metric (kg, tonne)',
   ofDryMatter: '{text} of DM',
   onDryMatter: '{text} DM',

@@ -1,5 +1,8 @@
 import type { ImportRow } from '@maslin/shared'
 
+/** What a spreadsheet takes for a formula; a plain negative number stays one. */
+const FORMULA = /^(?:[=+@\t\r]|-(?![\d.,\s]+$))/
+
 /**
  * The rows that stayed out as a CSV that can be mended and dropped again, the reasons in the last columns. Cells that a
  * spreadsheet would take for formulas are made harmless.
@@ -25,7 +28,7 @@ export async function leftOutCsv(
       [...heading, words.line, words.state, words.reason],
       ...rows.map((row) => [...cellsOf(row), row.line, words.stateOf(row), words.reasonOf(row)]),
     ],
-    { escapeFormulae: true, newline: '\r\n' },
+    { escapeFormulae: FORMULA, newline: '\r\n' },
   )
 }
 
