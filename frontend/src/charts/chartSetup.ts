@@ -41,6 +41,17 @@ const canvasShapes: Record<Exclude<Shape, 'plain'>, Parameters<typeof draw>[0]> 
   zigzag: 'zigzag',
 }
 
+/** A name over several lines, so that it does not take the room of the bars. */
+export function inLines(name: string, most = 18): string[] {
+  const lines: string[] = []
+  for (const word of name.split(' ')) {
+    const last = lines.at(-1)
+    if (last !== undefined && `${last} ${word}`.length <= most) lines[lines.length - 1] = `${last} ${word}`
+    else lines.push(word)
+  }
+  return lines
+}
+
 /** A feed's colour and pattern for a canvas. */
 export function canvasPaint(paint: Paint): string | CanvasPattern {
   return paint.shape === 'plain' ? paint.ground : draw(canvasShapes[paint.shape], paint.ground, paint.mark, 8)

@@ -98,7 +98,7 @@ export default {
     price: '{name} is worth buying below {below}; now {now}.',
     priceThen: '{name} is worth buying below {below}, then {share} of the mix; now {now}.',
     never: '{name} comes in at no price, as the limits stand; now {now}.',
-    noPrice: '{name} has no price on this day, so it stays out. Type one to try it.',
+    noPrice: '{name} has no price on this day, so it stays out.',
     ruminantOrigin:
       '{name} is of ruminant origin and may not go into feed for ruminants. The rule is there to keep out a deadly brain disease.',
     nonProteinNitrogen:
@@ -294,6 +294,8 @@ export default {
     windowHigh: 'The mix stays as it is up to {high}.',
     windowAny: 'The mix stays as it is at any price.',
     priceNow: 'Price {price}.',
+    tryPrice: 'try a price',
+    typePrice: 'type a price',
     focus: 'Show the price curve of {name}',
     menu: 'More about {name}',
     own: 'Limits of this feed',
@@ -457,6 +459,7 @@ export default {
     copied: '{count} feed copied. | {count} feeds copied.',
     noPrice: 'no price yet',
     typePrice: 'Price of {name}',
+    priceHint: 'with its package: 9.20/50 lb, 452/ton, 8.10/bu',
     supplier: 'From',
     supplierHint: 'Typed prices are kept as offers of this supplier.',
     ownSupplier: 'On the farm',
