@@ -130,7 +130,7 @@ function bestColumn(
 function correctPackage(found: Columns, columns: readonly string[][]): void {
   const most = (column: number | undefined, test: (cell: string) => boolean) => {
     const cells = columns[column ?? -1] ?? []
-    return cells.length > 0 && cells.filter(test).length / cells.length >= 0.5
+    return cells.length > 0 && cells.filter(test).length / cells.length > 0.5
   }
   const isWhole = (cell: string) => /\d/.test(cell) && parseWeight(cell).ok
   for (const field of ['unit', 'quantity'] as const) {
