@@ -1,9 +1,13 @@
-/** Stands in for the solver's worker script: does what `job.input.name` says, so that a pool can be seen to survive it. */
+/**
+ * Stands in for the solver's worker script: does what `job.input.name` (or the group's name) says, so that a pool can be
+ * seen to survive it.
+ */
 import { existsSync, writeFileSync } from 'node:fs'
 
 export default async function solve(job) {
   if (job.kind === 'probe') return { ok: true, value: true }
-  const { name, marker } = job.input
+  const { marker, ms, group } = job.input
+  const [name, wait] = (job.input.name ?? group.name).split(' ')
   switch (name) {
     case 'hang':
       for (;;);
@@ -27,7 +31,7 @@ export default async function solve(job) {
     case 'throw':
       return { ok: false, message: 'thrown inside' }
     case 'wait':
-      await new Promise((resolve) => setTimeout(resolve, job.input.ms))
+      await new Promise((resolve) => setTimeout(resolve, ms ?? Number(wait)))
       return { ok: true, value: 'waited' }
     default:
       return { ok: true, value: { echo: name, deadlineMs: job.deadlineMs } }
