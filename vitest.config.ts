@@ -3,7 +3,7 @@ import vuetify from 'vite-plugin-vuetify'
 import { defineConfig } from 'vitest/config'
 
 /** Tests against a running MariaDB: a server is started for them unless the test run has brought one. */
-const withDatabase = { environment: 'node', globalSetup: ['tests/support/globalSetup.ts'] } as const
+const withDatabase = { environment: 'node' as const, globalSetup: ['tests/support/globalSetup.ts'] }
 
 /** Projects of one group run side by side; the groups one after another, so that browsers have the machine to themselves. */
 const group = (groupOrder: number, maxWorkers: number) => ({ sequence: { groupOrder }, maxWorkers })

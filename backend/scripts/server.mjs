@@ -8,8 +8,8 @@ import { endProcess, endWithUs, forgetPid, notePid, pidFrom } from './processes.
 import { SetupError } from './say.mjs'
 
 const readyWithinMs = 180_000
-/** Longer than the server itself gives the requests in flight when it is told to stop. */
-const stopWithinMs = 30_000
+/** Longer than the server itself gives the requests in flight when it is told to stop (15 s by default). */
+const stopWithinMs = (Number(process.env.SHUTDOWN_SECONDS) || 15) * 1000 + 10_000
 const marker = 'backend/'
 
 /**

@@ -7,6 +7,7 @@ import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import { inProject } from '../../backend/scripts/paths.mjs'
 import { freePort } from '../../backend/scripts/ports.mjs'
 import { commandOf, endProcess, processesWith } from '../../backend/scripts/processes.mjs'
+import { asAdministrator, createTestDatabase } from '../support/database'
 
 interface Start {
   pid: number
@@ -150,6 +151,24 @@ describe('npm start', () => {
     expect(await maslin.exit).toBe(0)
     expect(databaseProcesses()).toEqual([])
     expect(pidIn('server.pid')).toBeUndefined()
+  })
+
+  it('uses the server of DATABASE_URL and starts none of its own', async () => {
+    const database = await createTestDatabase()
+    try {
+      const maslin = start({ DATABASE_URL: database.url })
+      await maslin.says(running)
+      expect(await isReady()).toBe(200)
+      expect(databaseProcesses()).toEqual([])
+      const tables = await asAdministrator((connection) =>
+        connection.query(`SHOW TABLES FROM ${database.name}`),
+      )
+      expect(tables.length).toBeGreaterThan(10)
+      process.kill(maslin.pid, 'SIGTERM')
+      expect(await maslin.exit).toBe(0)
+    } finally {
+      await database.drop()
+    }
   })
 
   it('does not start twice on the same data', async () => {
