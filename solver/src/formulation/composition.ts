@@ -1,4 +1,4 @@
-import type { FormulationInput, NutrientId, SolverFeed } from '@maslin/shared'
+import type { FeedClass, FormulationInput, NutrientId, SolverFeed } from '@maslin/shared'
 
 /** Which end of a feed's value a row counts: the one that is unsafe for the row. */
 export type End = 'low' | 'high'
@@ -23,19 +23,22 @@ export type Composition = (feed: SolverFeed, nutrient: NutrientId, end: End) => 
 /**
  * How contents are counted: a known value as it is, an interval at the end asked for, an unknown one as zero at the
  * low end and as the assumed high value at the high end (of the feed's class, else of the whole library, else the
- * highest known among the feeds at hand; where not even that exists zero, and the limit cannot be checked).
+ * highest known among the feeds at hand, of its class first; where not even that exists zero, and the limit cannot be checked).
  */
 export function compositionOf(input: FormulationInput): Composition {
-  const highestKnown = new Map<NutrientId, number>()
-  const highestOf = (nutrient: NutrientId): number => {
-    const known = highestKnown.get(nutrient)
-    if (known !== undefined) return known
-    let highest = 0
-    for (const feed of [...input.feeds, ...input.baseFeeds]) {
-      const entry = feed.values[nutrient]
-      if (entry) highest = Math.max(highest, entry.value, entry.high ?? 0)
-    }
-    highestKnown.set(nutrient, highest)
+  const highestKnown = new Map<string, number>()
+  /** The highest known value at hand: of the feed's own class, else of any. */
+  const highestOf = (nutrient: NutrientId, feedClass: FeedClass): number => {
+    const key = `${feedClass} ${nutrient}`
+    const before = highestKnown.get(key)
+    if (before !== undefined) return before
+    const known = [...input.feeds, ...input.baseFeeds].filter((feed) => feed.values[nutrient])
+    const ofClass = known.filter((feed) => feed.class === feedClass)
+    const highest = (ofClass.length > 0 ? ofClass : known).reduce((most, feed) => {
+      const { value, high = value } = feed.values[nutrient]!
+      return Math.max(most, value, high)
+    }, 0)
+    highestKnown.set(key, highest)
     return highest
   }
   return (feed, nutrient, end) => {
@@ -51,6 +54,6 @@ export function compositionOf(input: FormulationInput): Composition {
       }
     if (end === 'low') return { value: 0, unknown: true }
     const assumed = input.assumedHighs[feed.class]?.[nutrient] ?? input.assumedHighs.any?.[nutrient]
-    return { value: orNothing(assumed?.value ?? highestOf(nutrient)), unknown: true }
+    return { value: orNothing(assumed?.value ?? highestOf(nutrient, feed.class)), unknown: true }
   }
 }

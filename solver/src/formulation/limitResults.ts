@@ -56,13 +56,14 @@ export function limitResultOf(
       margin.perUnit === undefined
         ? margin
         : { ...margin, perUnit: tidy(margin.perUnit * scale, sizeOf(reported), leastCost) }
-    result.raise = scaled(chosen.margins.raise)
-    result.lower = scaled(chosen.margins.lower)
-    const prices = [result.raise.perUnit ?? 0, result.lower.perUnit ?? 0]
+    const { raise, lower } = { raise: scaled(chosen.margins.raise), lower: scaled(chosen.margins.lower) }
+    const prices = [raise.perUnit ?? 0, lower.perUnit ?? 0]
     result.state = prices.some((price) => price !== 0) ? 'costs' : 'tight'
     result.bindingSide =
       reported.rowSide === 'equal' ? (prices.some((price) => price < 0) ? 'max' : 'min') : reported.side
-    result.differs = differs(result.raise, result.lower)
+    result.differs = differs(raise, lower)
+    result.raise = raise
+    result.lower = downwards(lower)
   }
   if (notCheckable(formulation, reported, amounts, result)) result.state = 'notCheckable'
   return result
@@ -93,6 +94,10 @@ function readingOf(side: LimitSide, amounts: number[]): number {
 
 const tidy = (price: number, size: number, cost: number): number =>
   Math.abs(price) * size <= NO_PRICE * Math.abs(cost) ? 0 : price
+
+/** The answer counts each direction by its own moves: a unit less changes the cost by the opposite of the slope. */
+const downwards = (margin: Margin): Margin =>
+  margin.perUnit === undefined ? margin : { ...margin, perUnit: margin.perUnit === 0 ? 0 : -margin.perUnit }
 
 function differs(raise: Margin, lower: Margin): boolean {
   if (raise.impossible !== lower.impossible) return true

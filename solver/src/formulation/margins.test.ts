@@ -37,11 +37,12 @@ function costAt({ builder, limit, result, direction }: Move, distance: number): 
   )
 }
 
+/** Change of the least cost per unit moved, at the start of the move. */
 async function slopeOf(move: Move, start: number, step: number): Promise<number> {
   const far = await costAt(move, step)
   const near = await costAt(move, step / 2)
   if (far === undefined || near === undefined) throw new Error('A move said to be possible is not.')
-  return move.direction * (2 * ((near - start) / (step / 2)) - (far - start) / step)
+  return 2 * ((near - start) / (step / 2)) - (far - start) / step
 }
 
 async function checkMargin(move: Move, margin: Margin, answer: OptimalAnswer): Promise<void> {
@@ -117,7 +118,8 @@ describe.each(bases)('what a limit costs, basis %s', (basis) => {
           const at = (share: number) =>
             builder.moved(limit.id, { [result.bindingSide!]: bound + share * reach })
           const straight = (cost: number, share: number) =>
-            Math.abs(cost - answer.cost.least - share * reach * margin.perUnit!) <= 1e-8 * answer.cost.least
+            Math.abs(cost - answer.cost.least - share * Math.abs(reach) * margin.perUnit!) <=
+            1e-8 * answer.cost.least
           const context = `seed ${seed}, ${JSON.stringify({ limit, margin })}`
           const near = await mixed(at(0.97))
           if (!straight(near.cost.least, 0.97))
@@ -179,7 +181,7 @@ describe('a limit that differs for more and less', () => {
         .limit({ id: 'cp', kind: 'nutrient', nutrient: 'crudeProtein', measure: 'perKgDryMatter', min: 300 }),
     )
     expect(answer.limits[0]).toMatchObject({ raise: { impossible: true }, differs: true, state: 'costs' })
-    expect(answer.limits[0]!.lower!.perUnit).toBeCloseTo((1000 * (0.4 - 0.2)) / 0.9 / 200, 9)
+    expect(answer.limits[0]!.lower!.perUnit).toBeCloseTo((-1000 * (0.4 - 0.2)) / 0.9 / 200, 9)
   })
 
   it('moves both ends of a fixed amount together', async () => {
@@ -200,7 +202,7 @@ describe('a limit that differs for more and less', () => {
       state: 'costs',
       bindingSide: 'max',
       raise: { perUnit: expect.closeTo(perKilogram, 9), until: expect.closeTo(1000, 6) },
-      lower: { perUnit: expect.closeTo(perKilogram, 9), until: expect.closeTo(0, 6) },
+      lower: { perUnit: expect.closeTo(-perKilogram, 9), until: expect.closeTo(0, 6) },
     })
   })
 })
