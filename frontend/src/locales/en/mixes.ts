@@ -408,7 +408,7 @@ export default {
     tryLabel: 'Value to try',
     drag: 'Drag the mark, use the arrow keys or type a value to try it.',
     view: 'Today’s value is {value}.',
-    summary: '{title}. Today {value}, {cost} a head and day. Shown from {from} to {to}.',
+    summary: 'Today {value}, {cost} a head and day. Shown from {from} to {to}.',
     pieceFree: 'From {from} to {to} it makes no difference to the cost.',
     pieceCosts: 'From {from} to {to}, {step} more costs {amount} for the group and 30 days.',
     pieceSaves: 'From {from} to {to}, {step} more saves {amount} for the group and 30 days.',

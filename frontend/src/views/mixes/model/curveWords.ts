@@ -107,7 +107,6 @@ export function curveStory(
     sentences.push(rich(words, 'mixes.curve.possibleTo', { to: subject.text(subject.shown(to)) }))
   if (!curve.exact) sentences.push([plain(words.t('mixes.curve.sampled'))])
   const summary = words.t('mixes.curve.summary', {
-    title: subject.title,
     value: subject.text(today),
     cost: words.q.money(answer.cost.perHeadDay),
     from: subject.text(first.x),
