@@ -63,6 +63,8 @@ const DEADLOCK = 1213
 
 function toAppError(thrown: unknown): AppError {
   if (thrown instanceof AppError) return thrown
+  // An address that cannot be decoded is the address of nothing.
+  if (thrown instanceof URIError) return notFound()
   const number = databaseErrorNumber(thrown)
   if (thrown instanceof ForeignKeyConstraintError && number === STILL_REFERENCED) {
     return new AppError('in_use', { detail: 'Something else still refers to it.', cause: thrown })
