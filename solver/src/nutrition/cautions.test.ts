@@ -99,7 +99,7 @@ describe('copperCaution', () => {
       .state
 
   it('warns above 10 and stops above 15, by acknowledgement on book values and outright on tested ones', () => {
-    expect(state({ totalPerKg: 10 })).toBe('none')
+    expect(state({ totalPerKg: 10 })).toBe('low')
     expect(state({ totalPerKg: 10.1 })).toBe('warn')
     expect(state({ totalPerKg: 15 })).toBe('warn')
     expect(state({ totalPerKg: 15.1 })).toBe('acknowledge')
@@ -112,7 +112,7 @@ describe('copperCaution', () => {
   })
 
   it('is low where even the assumed highs leave it low', () => {
-    expect(state({ totalPerKg: 9, assumedShare: 0.9 })).toBe('none')
+    expect(state({ totalPerKg: 9, assumedShare: 0.9 })).toBe('low')
   })
 
   it('counts what the known values alone exceed, however much is assumed', () => {
@@ -126,6 +126,20 @@ describe('copperCaution', () => {
 
   it('says nothing of other species', () => {
     expect(state({ species: 'goat', totalPerKg: 40 })).toBe('none')
+  })
+
+  it('is looked at in every mix for sheep, also where it is low', () => {
+    const low = copperCaution(thresholds, {
+      species: 'sheep',
+      totalPerKg: 6,
+      assumedShare: 0.2,
+      origin: 'book',
+    })
+    expect(low.caution).toMatchObject({
+      code: 'copperLow',
+      level: 'note',
+      params: { totalPerKg: 6, limit: 10 },
+    })
   })
 
   it('carries the figures for the words', () => {

@@ -147,7 +147,7 @@ export function animalRules(
   return { leftOut: [...leftOut].map(([feedId, reason]) => ({ feedId, reason })), cautions }
 }
 
-export type CopperState = 'none' | 'warn' | 'acknowledge' | 'block' | 'notCheckable'
+export type CopperState = 'none' | 'low' | 'warn' | 'acknowledge' | 'block' | 'notCheckable'
 
 export interface CopperInput {
   species: Species
@@ -161,10 +161,19 @@ export interface CopperInput {
   feedIds?: string[]
 }
 
+const levels = {
+  low: 'note',
+  warn: 'warn',
+  acknowledge: 'acknowledge',
+  notCheckable: 'acknowledge',
+  block: 'block',
+} as const satisfies Record<Exclude<CopperState, 'none'>, Caution['level']>
+
 /**
  * Copper in a diet for sheep: above 10 mg/kg of dry matter a warning, above 15 to be acknowledged on book values and
  * blocked on tested ones. What the known values alone exceed counts as exceeded; a total that is low even with the assumed
- * highs is low; in between, with more assumed than known, it cannot be checked. Other species: no caution.
+ * highs is low, and is said too, so that no mix for sheep goes out without a look at copper; in between, with more assumed
+ * than known, it cannot be checked. Other species: no caution.
  */
 export function copperCaution(
   thresholds: FirstMixDefaults['copper'],
@@ -174,20 +183,19 @@ export function copperCaution(
   const { warnAbove, stopAbove } = thresholds
   const known = input.totalPerKg * (1 - input.assumedShare)
   const mostlyAssumed = input.assumedShare > 0.5
-  const state = ((): CopperState => {
+  const state = ((): Exclude<CopperState, 'none'> => {
     if (known > stopAbove.value) return input.origin === 'tested' ? 'block' : 'acknowledge'
-    if (input.totalPerKg <= warnAbove.value) return 'none'
+    if (input.totalPerKg <= warnAbove.value) return 'low'
     if (mostlyAssumed) return 'notCheckable'
     if (input.totalPerKg > stopAbove.value) return 'acknowledge'
     return 'warn'
   })()
-  if (state === 'none') return { state }
-  const figure = state === 'warn' ? warnAbove : stopAbove
+  const figure = state === 'warn' || state === 'low' ? warnAbove : stopAbove
   return {
     state,
     caution: {
       code: `copper${state.charAt(0).toUpperCase()}${state.slice(1)}`,
-      level: state === 'notCheckable' ? 'acknowledge' : state,
+      level: levels[state],
       params: {
         totalPerKg: input.totalPerKg,
         knownPerKg: known,

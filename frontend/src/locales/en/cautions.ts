@@ -61,6 +61,10 @@ export default {
       title: 'Ionophore.',
       text: 'A feed with an ionophore is used. It is for the species on its label only, at the rate on its label; keep horses, donkeys and dogs away.',
     },
+    copperLow: {
+      title: 'Copper, sheep.',
+      text: 'The diet holds {totalPerKg} mg of copper per kg of dry matter, {assumedShare} of it assumed; sheep slowly store it above {limit}. No added copper may go in.',
+    },
     copperWarn: {
       title: 'Copper, sheep.',
       text: 'The diet holds {totalPerKg} mg of copper per kg of dry matter, {assumedShare} of it assumed; above {limit} sheep slowly store it. No added copper may go in.',
