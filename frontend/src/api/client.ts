@@ -1,6 +1,6 @@
 import { pageOf, problemSchema, type FieldProblem, type ProblemCode } from '@maslin/shared'
 import type { z } from 'zod'
-import { refreshSession } from './refresh'
+import { isRenewalDue, refreshSession } from './refresh'
 
 /** Failures that never reached the API, or came back in no shape we know. */
 export type LocalProblemCode = 'offline' | 'unreachable' | 'unreadable_answer'
@@ -105,6 +105,11 @@ async function problemOf(response: Response): Promise<ApiError> {
   })
 }
 
+const renewSession = (since: number): Promise<boolean> =>
+  refreshSession(since).catch(() => {
+    throw new ApiError(navigator.onLine ? 'unreachable' : 'offline', 0)
+  })
+
 /**
  * Sends one request and returns the raw answer. A session that ran out is renewed once, by one request for all that
  * wait for it, and the request is sent again.
@@ -112,12 +117,11 @@ async function problemOf(response: Response): Promise<ApiError> {
  */
 async function exchange(method: Method, path: string, options: RequestOptions): Promise<Response> {
   const sentAt = Date.now()
+  const renewable = !NOT_RENEWED.includes(path)
+  if (renewable && isRenewalDue(sentAt)) await renewSession(sentAt)
   let response = await send(method, path, options)
-  if (response.status === 401 && !NOT_RENEWED.includes(path)) {
-    const renewed = await refreshSession(sentAt).catch(() => {
-      throw new ApiError(navigator.onLine ? 'unreachable' : 'offline', 0)
-    })
-    if (renewed) response = await send(method, path, options)
+  if (response.status === 401 && renewable) {
+    if (await renewSession(sentAt)) response = await send(method, path, options)
     if (response.status === 401) for (const listener of endListeners) listener()
   }
   if (!response.ok) throw await problemOf(response)

@@ -1,9 +1,27 @@
 const RENEWED_AT = 'maslin.renewedAt'
 
+/** Access tokens live ten minutes; one about to end is renewed before it is refused. */
+const RENEW_AFTER = 9 * 60_000
+
 let underway: Promise<boolean> | undefined
 
 function renewedAt(): number {
   return Number(localStorage.getItem(RENEWED_AT) ?? 0)
+}
+
+/** Notes that a fresh session has come in, by signing in or by a renewal. */
+export function noteRenewal(): void {
+  localStorage.setItem(RENEWED_AT, String(Date.now()))
+}
+
+/** True where the access token is about to end. False also for a visitor, who has none. */
+export function isRenewalDue(now = Date.now()): boolean {
+  const at = renewedAt()
+  return at > 0 && now - at > RENEW_AFTER
+}
+
+export function forgetRenewal(): void {
+  localStorage.removeItem(RENEWED_AT)
 }
 
 async function renew(since: number): Promise<boolean> {
@@ -13,7 +31,7 @@ async function renew(since: number): Promise<boolean> {
   if (response.status >= 500 || response.status === 429)
     throw new Error(`refresh answered ${response.status}`)
   if (!response.ok) return false
-  localStorage.setItem(RENEWED_AT, String(Date.now()))
+  noteRenewal()
   return true
 }
 

@@ -1,9 +1,18 @@
-import { may, type Action, type Farm, type Membership, type Role, type Session } from '@maslin/shared'
+import {
+  may,
+  type Action,
+  type Farm,
+  type Membership,
+  type Role,
+  type Session,
+  type SignIn,
+  type SignUp,
+} from '@maslin/shared'
 import { defineStore } from 'pinia'
 import { computed, ref, shallowRef } from 'vue'
 import * as auth from '../api/auth'
 import { ApiError } from '../api/client'
-import type { SignIn, SignUp } from '@maslin/shared'
+import { forgetRenewal, noteRenewal } from '../api/refresh'
 
 /** Tells a visitor from someone whose cookie may still hold, so that the landing page asks the API nothing. Holds no secret. */
 const HINT = 'maslin.signedIn'
@@ -29,6 +38,7 @@ export const useSessionStore = defineStore('session', () => {
   }
 
   function forget(): void {
+    forgetRenewal()
     session.value = undefined
     known.value = true
     farmId.value = undefined
@@ -56,10 +66,12 @@ export const useSessionStore = defineStore('session', () => {
 
   async function signIn(body: SignIn): Promise<void> {
     take(await auth.signIn(body))
+    noteRenewal()
   }
 
   async function signUp(body: SignUp): Promise<void> {
     take(await auth.signUp(body))
+    noteRenewal()
   }
 
   async function signOut(): Promise<void> {
