@@ -1,11 +1,12 @@
 import type { Server } from 'node:http'
-import { pino, type Logger } from 'pino'
+import type { Logger } from 'pino'
 import { createApp } from './app'
 import { ConfigError, readConfig, type Config } from './config'
 import { openDatabase, type Database } from './database/database'
 import { migrate } from './database/migrate'
 import { checkServerSettings } from './database/settings'
 import { loadDemo } from './demo/loadDemo'
+import { createLogger } from './logger'
 import { loadBookFeeds } from './services/bookFeeds'
 import { loadRequirementLibrary, type RequirementLibrary } from './services/requirementLibrary'
 import { SolvingPool } from './solving/pool'
@@ -13,7 +14,7 @@ import { SolvingPool } from './solving/pool'
 /** Brings everything up, in the order in which one part needs the other. */
 async function start(): Promise<void> {
   const config = readConfig(process.env)
-  const logger = pino({ level: config.logLevel })
+  const logger = createLogger(config.logLevel)
   const database = openDatabase(config.databaseUrl, { poolSize: config.databasePool })
   const requirements = await prepare(database, config, logger)
   const solving = await SolvingPool.create({
@@ -21,6 +22,7 @@ async function start(): Promise<void> {
     queueLimit: config.solveQueue,
     onCrash: (error) => logger.error({ err: error }, 'a solve worker ended'),
   })
+  if (!(await solving.warmUp())) logger.error('a solve worker does not answer')
   const signIns = await loadDemo({ config, database, solving, requirements })
   if (signIns) logger.info({ people: signIns.length }, 'demo farms loaded')
   let open = true

@@ -2,10 +2,12 @@ import type { Group, MixDraft, Problem, Revision, Scenario, ScenarioSummary } fr
 import canonicalize from 'canonicalize'
 import { createHash } from 'node:crypto'
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
+import { startTestApp, type TestAppOptions } from '../support/app'
 import {
   addGroup,
   bodyOf,
   firstDraft,
+  furnishFarm,
   ifMatch,
   saveScenario,
   solve,
@@ -219,6 +221,34 @@ describe('scenarios', () => {
       .post(`${at(scenario)}/comments`)
       .send({ revision: 3, text: 'x' })
       .expect(404)
+  })
+
+  it('puts it on record when the second engine disagrees', async () => {
+    const solving: TestAppOptions['solving'] = {
+      ready: () => Promise.resolve(true),
+      traceCurve: (...call) => farm.pool.traceCurve(...call),
+      solveMix: async (...call) => {
+        const answer = await farm.pool.solveMix(...call)
+        if (answer.status !== 'optimal') return answer
+        const secondOpinion = { engine: 'other', agrees: false, relativeDifference: 0.1, note: 'dearer' }
+        return { ...answer, proof: { ...answer.proof, secondOpinion } }
+      },
+    }
+    const test = await startTestApp({ solving })
+    try {
+      const other = await furnishFarm(test, farm.pool)
+      const scenario = await saveScenario(other, await firstDraft(other, await addGroup(other)))
+      const events = await test.database.models.auditEvents.findAll({
+        where: { farmId: other.farmId, action: 'engines_disagree' },
+      })
+      expect(events).toHaveLength(1)
+      expect(events[0]?.get('afterState')).toMatchObject({
+        opinion: { engine: 'other', relativeDifference: 0.1 },
+      })
+      expect(scenario.latest.state).toBe('draft')
+    } finally {
+      await test.close()
+    }
   })
 
   it('names the farm in every statement', () => {

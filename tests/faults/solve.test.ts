@@ -127,6 +127,12 @@ describe('solving pool under trouble', () => {
     expect(deadlineMs).toBeLessThan(1_900)
   })
 
+  it('warms every worker up', async () => {
+    await expect(pool.warmUp()).resolves.toBe(true)
+    await pool.close()
+    await expect(pool.warmUp()).resolves.toBe(false)
+  })
+
   it('is ready after a crash, and sends everyone away on closing', async () => {
     await timed(solve('exit'))
     await expect(pool.ready()).resolves.toBe(true)

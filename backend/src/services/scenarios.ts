@@ -91,11 +91,13 @@ export async function createScenario(
   person: Person,
   request: z.output<typeof scenarioCreateSchema>,
 ): Promise<Scenario> {
-  const saved = await solveToSave(context, request.draft)
-  return context.run(async (farm) => {
-    const { name, mixId, note } = request
+  const { name, mixId, note } = request
+  await context.run(async (farm) => {
     if (mixId !== undefined && (await farm.mixes.count({ id: mixId })) === 0)
       throw invalidField('mixId', 'unknown_mix', 'The farm has no such mix.')
+  })
+  const saved = await solveToSave(context, request.draft)
+  return context.run(async (farm) => {
     const row = await farm.scenarios.insert({ name, mixId: mixId ?? null, latestRevision: 1 })
     await addRevision(farm, person, { ...saved, scenarioId: row.id, revision: 1, note })
     const scenario = await getScenario(farm, row.id)

@@ -26,6 +26,7 @@ export interface SolveLimits {
 /** How long a solve that nobody waits for any more may run on: most end sooner than a new worker takes to start. */
 const GRACE_MS = 500
 const PROBE_MS = 5_000
+const WARM_UP_MS = 30_000
 const PROOF_OF_LIFE_MS = 10_000
 
 /**
@@ -36,6 +37,7 @@ export class SolvingPool {
   readonly #piscina: Piscina
   readonly #slots: Slots
   readonly #onCrash: (error: Error) => void
+  readonly #workers: number
   #lastAnswer = -Infinity
   #closed = false
 
@@ -53,6 +55,7 @@ export class SolvingPool {
     })
     this.#onCrash = options.onCrash ?? (() => undefined)
     this.#piscina.on('error', (error: Error) => this.#onCrash(error))
+    this.#workers = options.workers
     this.#slots = new Slots(options.workers, options.queueLimit)
   }
 
@@ -96,6 +99,14 @@ export class SolvingPool {
       if (error instanceof SolvingError) return false
       throw error
     }
+  }
+
+  /** Lets every worker load its engine, so that the first keeper does not wait for it. False where one did not answer. */
+  async warmUp(): Promise<boolean> {
+    const probes = Array.from({ length: this.#workers }, () =>
+      this.#perform((deadlineMs) => ({ kind: 'probe', deadlineMs }), { deadlineMs: WARM_UP_MS }),
+    )
+    return (await Promise.allSettled(probes)).every(({ status }) => status === 'fulfilled')
   }
 
   async close(): Promise<void> {
