@@ -10,9 +10,7 @@ export interface ScaledOptimum {
   basis: Basis
 }
 
-/** Rounding noise of a sum, as a share of its terms, below which a value is its bound. */
-const KERNEL_NOISE = 1e-12
-/** The same for values taken from an engine, relative to 1 + |value| in scaled terms. */
+/** Distance from a bound at which a value taken from an engine is on it, relative to 1 + |value| in scaled terms. */
 const ENGINE_NOISE = 1e-9
 
 /** The factorised basis behind an answer, with the program it belongs to. */
@@ -50,8 +48,8 @@ export function finishOptimum(
   const kernel = factorise(scaled, optimum.basis)
   if (kernel) {
     const basic = solveBasis(scaled, optimum.basis, kernel)
-    const noise = basic.valueSize.map((size) => KERNEL_NOISE * size)
-    const outcome = unscale(lp, scaled, { ...basic, basis: optimum.basis }, noise, engine, milliseconds)
+    const found = { value: basic.value, dual: basic.dual, basis: optimum.basis }
+    const outcome = unscale(lp, scaled, found, basic.valueNoise, engine, milliseconds)
     outcome.certificate = checkOutcome(lp, outcome)
     if (outcome.certificate.valid) {
       factorisations.set(outcome, { lp, scaled, kernel, valueSize: basic.valueSize })
@@ -64,7 +62,7 @@ export function finishOptimum(
   return raw
 }
 
-/** Undoes the scaling; values within rounding noise of a bound are set on it. */
+/** Undoes the scaling; values within rounding noise of a bound, or of zero, are set on it. */
 function unscale(
   lp: LinearProgram,
   scaled: ScaledProgram,
@@ -80,7 +78,9 @@ function unscale(
     const { lower, upper } = lp.columns[j]!
     const amount = value[j]! * scaled.colScale[j]!
     const near = noise[j]! * scaled.colScale[j]!
-    amounts[j] = amount - lower <= near ? lower : upper - amount <= near ? upper : amount
+    if (amount - lower <= near) amounts[j] = lower
+    else if (upper - amount <= near) amounts[j] = upper
+    else amounts[j] = Math.abs(amount) <= near ? 0 : amount
   }
   const priced = new Float64Array(n)
   const rows: RowResult[] = new Array<RowResult>(m)

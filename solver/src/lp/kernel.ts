@@ -10,8 +10,11 @@ import type { ScaledProgram } from './scaled'
 
 /** Above this size the dense factorisation would cost more than re-solving does. */
 const LARGEST_KERNEL = 250
-/** Rounding noise of a price, as a share of the terms that made it. */
+/** Rounding noise of a price and of an amount, as a share of the terms that made it. */
 const PRICE_NOISE = 1e-13
+const VALUE_NOISE = 1e-12
+/** A scaled price or amount this small beside the largest of its kind is what the elimination left of zero. */
+const SMALLEST_SHARE = 1e-14
 /** A pivot smaller than this, relative to the largest of its column at the start, makes the basis useless. */
 const SMALLEST_PIVOT = 1e-11
 
@@ -118,7 +121,15 @@ export interface BasicSolution {
   value: Float64Array
   /** Per column: Σ|terms| of the sum that gave the value; rounding is some 1e-16 of it. */
   valueSize: Float64Array
+  /** Per column: below this distance from a bound, or from zero, a value is on it. */
+  valueNoise: Float64Array
   dual: Float64Array
+}
+
+const largestOf = (values: Float64Array): number => {
+  let largest = 0
+  for (let k = 0; k < values.length; k++) largest = Math.max(largest, Math.abs(values[k]!))
+  return largest
 }
 
 /** Solves the basis once more, from the data: the engine's own values carry its update errors. */
@@ -169,6 +180,10 @@ export function solveBasis(p: ScaledProgram, basis: Basis, kernel: Kernel): Basi
     }
   }
   // What is left of terms that cancel is no price: beside a price of exactly zero it would look like a wrong sign.
-  for (let i = 0; i < p.numRows; i++) if (Math.abs(dual[i]!) <= PRICE_NOISE * dualSize[i]!) dual[i] = 0
-  return { value, valueSize, dual }
+  const least = SMALLEST_SHARE * largestOf(dual)
+  for (let i = 0; i < p.numRows; i++)
+    if (Math.abs(dual[i]!) <= Math.max(PRICE_NOISE * dualSize[i]!, least)) dual[i] = 0
+  const whole = largestOf(value)
+  const valueNoise = valueSize.map((size) => Math.max(VALUE_NOISE * size, SMALLEST_SHARE * whole))
+  return { value, valueSize, valueNoise, dual }
 }
