@@ -1,8 +1,8 @@
-import { pino } from 'pino'
 import request from 'supertest'
 import { createApp, type AppOptions } from '../../backend/src/app'
 import { readConfig, type Config } from '../../backend/src/config'
 import { openDatabase, type Database } from '../../backend/src/database/database'
+import { createLogger } from '../../backend/src/logger'
 import { migrate } from '../../backend/src/database/migrate'
 import { loadBookFeeds } from '../../backend/src/services/bookFeeds'
 import { loadRequirementLibrary } from '../../backend/src/services/requirementLibrary'
@@ -55,7 +55,7 @@ export async function startTestApp({
   await tap.learnTables(database)
   await loadBookFeeds(database, config.libraryDirectory)
   const requirements = await loadRequirementLibrary(database, config.libraryDirectory)
-  const logger = log ? pino({ level: 'trace' }, { write: log }) : pino({ level: 'silent' })
+  const logger = log ? createLogger('trace', { write: log }) : createLogger('silent')
   return {
     app: createApp({ config, database, solving, requirements, logger }),
     config,

@@ -2,6 +2,7 @@ import type { Request, RequestHandler, Response } from 'express'
 import type { Logger } from 'pino'
 import { pinoHttp } from 'pino-http'
 import type { SignedIn } from '../auth/signedIn'
+import { describeError } from '../logger'
 import { requestIdOf } from './requestContext'
 
 /** One line per request: what, who, how long, with its id. Never bodies, headers, cookies or query values. */
@@ -21,7 +22,8 @@ export function logRequests(logger: Logger): RequestHandler {
       responseTime: value.responseTime,
       ...whatHappened(request, response),
     }),
-    serializers: { req: () => undefined, res: () => undefined },
+    wrapSerializers: false,
+    serializers: { req: () => undefined, res: () => undefined, err: describeError },
   })
 }
 
