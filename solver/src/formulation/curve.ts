@@ -1,7 +1,7 @@
 import type { Curve, CurveAlong, FormulationInput, Limit } from '@maslin/shared'
 import { AnalysisStopped, costCurve } from '../analysis'
-import { DEFAULT_DEADLINE_MS, solveLinearProgram, type LinearProgram, type Outcome } from '../lp'
-import { Deadline, OutOfTime } from './deadline'
+import { DEFAULT_DEADLINE_MS } from '../lp'
+import { Deadline, OutOfTime, solverWithin, spoken, type Solve } from './deadline'
 import { followPieces } from './followPieces'
 import { valueOf } from './forms'
 import { batchScale } from './measures'
@@ -68,10 +68,11 @@ export async function traceMixCurve(
 }
 
 class CurveWork {
-  constructor(private readonly deadline: Deadline) {}
+  private readonly solve: Solve
 
-  private readonly solve = (lp: LinearProgram): Promise<Outcome> =>
-    solveLinearProgram(lp, { deadlineMs: this.deadline.left() })
+  constructor(private readonly deadline: Deadline) {
+    this.solve = solverWithin(deadline)
+  }
 
   async alongPrice(
     input: FormulationInput,
@@ -90,7 +91,7 @@ class CurveWork {
     if (!source) throw new CurveUnavailable('excludedFeed', 'The feed may not go into this mix at any price.')
     const { program } = formulation
     const none: Points & { at: number } = { at: today ?? from, exact: true, possible: {}, points: [] }
-    if ((await this.solve(program)).status !== 'optimal') return none
+    if (spoken(await this.solve(program)).status !== 'optimal') return none
     const curve = await costCurve(program, {
       along: { kind: 'cost', column: source.feed.id },
       from,
@@ -105,8 +106,9 @@ class CurveWork {
       const columns = [...program.columns]
       columns[source.column] = { ...columns[source.column]!, cost: (start.at + end.at) / 2 }
       const between = { columns, rows: program.rows }
-      const outcome = await this.solve(between)
-      if (outcome.status !== 'optimal') continue
+      const outcome = spoken(await this.solve(between))
+      if (outcome.status !== 'optimal')
+        throw new AnalysisStopped('numerical', `The mix is ${outcome.status} inside its curve.`)
       const settled = await settleTies(between, outcome, this.solve)
       const blend = partsOf(
         formulation,

@@ -1,3 +1,12 @@
+import { AnalysisStopped } from '../analysis'
+import {
+  solveLinearProgram,
+  type LinearProgram,
+  type Outcome,
+  type SolveOptions,
+  type StoppedOutcome,
+} from '../lp'
+
 /** Thrown inside the formulation when the caller's time is up; turned into a `stopped` answer at its edge. */
 export class OutOfTime extends Error {
   constructor() {
@@ -21,4 +30,22 @@ export class Deadline {
     if (left <= 0) throw new OutOfTime()
     return left
   }
+}
+
+/** Solves one of the programs of a call within what is left of its time; throws `OutOfTime`. */
+export type Solve = (lp: LinearProgram) => Promise<Outcome>
+
+/** Every program of a call solved by the same engine within one deadline. */
+export function solverWithin(deadline: Deadline, engine: SolveOptions['engine'] = 'auto'): Solve {
+  return async (lp) => {
+    const outcome = await solveLinearProgram(lp, { engine, deadlineMs: deadline.left() })
+    if (outcome.status === 'stopped' && outcome.reason === 'deadline') throw new OutOfTime()
+    return outcome
+  }
+}
+
+/** The outcome, unless it is an engine's silence: that throws `AnalysisStopped`, so that it never passes for "impossible". */
+export function spoken(outcome: Outcome): Exclude<Outcome, StoppedOutcome> {
+  if (outcome.status === 'stopped') throw new AnalysisStopped(outcome.reason, outcome.detail)
+  return outcome
 }

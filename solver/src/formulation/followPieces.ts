@@ -1,5 +1,6 @@
-import type { LinearProgram, Outcome } from '../lp'
+import type { LinearProgram } from '../lp'
 import { followBasis } from './basisPath'
+import { spoken, type Solve } from './deadline'
 import { moveSide, type LimitSide } from './program'
 
 /** One point of a curve along a limit: the limit, the cost of the program, the amounts of its columns. */
@@ -14,6 +15,7 @@ const STRAIGHT = 5e-4
 const MOST_HALVINGS = 6
 /** How far past a corner the program is solved again, as a share of the span; grows while it does not get past. */
 const PAST = 1e-7
+const FURTHEST = 1e-3
 const MOST_PIECES = 400
 
 /**
@@ -27,7 +29,7 @@ export async function followPieces(
   lp: LinearProgram,
   side: LimitSide,
   walk: { from: number; to: number },
-  solve: (lp: LinearProgram) => Promise<Outcome>,
+  solve: Solve,
 ): Promise<{ points: PathPoint[]; stoppedAt?: number }> {
   const direction = walk.to >= walk.from ? 1 : -1
   const span = Math.abs(walk.to - walk.from)
@@ -40,12 +42,14 @@ export async function followPieces(
     const start = corner + direction * past
     if (direction * (start - walk.to) > 0) break
     const moved = moveSide(lp, side, start)
-    const outcome = await solve(moved)
-    if (outcome.status !== 'optimal') {
-      // One step past a corner says nothing of the step itself; a second, longer one would hide where it ends.
-      if (outcome.status === 'infeasible') return { points, stoppedAt: corner }
-      break
+    const asked = await solve(moved)
+    // So close beyond what is possible an engine may find neither a mix nor a proof: ask a little further on.
+    if (asked.status === 'stopped' && past < FURTHEST * span) {
+      past = Math.max(past * 10, PAST * span)
+      continue
     }
+    const outcome = spoken(asked)
+    if (outcome.status !== 'optimal') return { points, stoppedAt: corner }
     const path = followBasis(moved, outcome, { ...side, bound: start })
     const reach = path ? Math.min(direction > 0 ? path.up : path.down, Math.abs(walk.to - start)) : 0
     const back = path && (direction > 0 ? path.down : path.up) >= past ? -direction * past : 0

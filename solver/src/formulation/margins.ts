@@ -1,6 +1,7 @@
 import type { Margin } from '@maslin/shared'
 import type { LinearProgram, OptimalOutcome, Outcome } from '../lp'
 import { followBasis, type BasisPath } from './basisPath'
+import { spoken, type Solve } from './deadline'
 import { valueOf } from './forms'
 import { moveSide, type LimitSide } from './program'
 
@@ -9,8 +10,6 @@ export interface Margins {
   raise: Margin
   lower: Margin
 }
-
-type Solve = (lp: LinearProgram) => Promise<Outcome>
 
 /** Steps off a corner, relative to the size of the limit, tried until one lies within the first piece. */
 const STEPS = [1e-4, 1e-5, 1e-6, 1e-7]
@@ -66,13 +65,17 @@ async function stepOff(
       ? Math.abs(otherEnd - side.bound)
       : Infinity
   if (room === 0) return { impossible: true }
-  let difference: Margin = { impossible: true }
+  let difference: Margin | undefined
+  let infeasible = false
+  let silence: Outcome | undefined
   for (const relative of STEPS) {
     const step = direction * Math.min(relative * sizeOf(side), room / 2)
     const bound = side.bound + step
     if (bound < 0) return { impossible: true }
     const moved = moveSide(lp, side, bound)
     const outcome = await solve(moved)
+    infeasible ||= outcome.status === 'infeasible'
+    if (outcome.status === 'stopped') silence = outcome
     if (outcome.status !== 'optimal') continue
     difference = { perUnit: (outcome.objective - optimal.objective) / step, until: bound, impossible: false }
     const path = followBasis(moved, outcome, { ...side, bound })
@@ -84,7 +87,8 @@ async function stepOff(
         bound + direction * (direction > 0 ? path.up : path.down),
       )
   }
-  return difference
+  if (silence && !difference && !infeasible) spoken(silence)
+  return difference ?? { impossible: true }
 }
 
 /** Whether the basis found after a step is optimal all the way back. */

@@ -1,8 +1,8 @@
 import type { Answer, Margin, OptimalAnswer, Proof } from '@maslin/shared'
 import { marginalPrices, openAnalysis, type AnalysisSession, type MarginalPrice } from '../analysis'
-import { secondOpinion, type LinearProgram, type OptimalOutcome, type Outcome } from '../lp'
+import { secondOpinion, type OptimalOutcome, type Outcome } from '../lp'
 import { cautionsOf } from './cautions'
-import type { Deadline } from './deadline'
+import type { Deadline, Solve } from './deadline'
 import { bindingSides, limitResultOf, sidesByLimit, type LimitStanding } from './limitResults'
 import { marginsOf, type Margins } from './margins'
 import type { Formulation, LimitSide } from './program'
@@ -13,7 +13,7 @@ import { settleTies } from './ties'
 export interface SolveContext {
   formulation: Formulation
   deadline: Deadline
-  solve: (lp: LinearProgram) => Promise<Outcome>
+  solve: Solve
   secondOpinion: boolean
 }
 

@@ -4,8 +4,9 @@ import type { OptimalOutcome } from '../lp'
 import { LpSession } from '../lp/session'
 import type { Deadline } from './deadline'
 import type { Formulation } from './program'
-import { blendOf } from './report'
 
+/** A share below this is rounding. */
+const NO_SHARE = 1e-9
 /** Steps below a buy-in price, as a share of the prices around, at which the mix that then results is looked at. */
 const JUST_BELOW = [1e-5, 1e-4, 1e-3]
 
@@ -47,7 +48,8 @@ export async function withWindows(context: PriceContext, blend: BlendPart[]): Pr
 export async function leftOutByPrice(context: PriceContext, blend: BlendPart[]): Promise<LeftOut[]> {
   const { formulation, optimal, session, deadline } = context
   const used = new Set(blend.map((part) => part.feedId))
-  const columns = formulation.diet.mix.map(({ feed }) => feed.id).filter((id) => !used.has(id))
+  const position = new Map(formulation.diet.mix.map(({ feed, column }) => [feed.id, column]))
+  const columns = [...position.keys()].filter((id) => !used.has(id))
   if (columns.length === 0) return []
   const entries = await buyInCosts(formulation.program, optimal, {
     session,
@@ -61,7 +63,7 @@ export async function leftOutByPrice(context: PriceContext, blend: BlendPart[]):
       const entry: LeftOut = { feedId: column, reason: 'price', pricePerKg: cost }
       if (entersBelow !== null && entersBelow > 0) {
         entry.buyInPrice = Math.min(entersBelow, cost)
-        Object.assign(entry, enteringAt(context, warm, blend, column, entry.buyInPrice))
+        Object.assign(entry, enteringAt(context, warm, position.get(column)!, entry.buyInPrice))
       }
       leftOut.push(entry)
     }
@@ -76,26 +78,25 @@ const distance = ({ pricePerKg = 0, buyInPrice }: LeftOut): number =>
 
 /** Solves the mix again just below a price, from where the last solve ended. */
 function enteringAt(
-  { formulation, deadline }: PriceContext,
+  { formulation, optimal, deadline }: PriceContext,
   warm: LpSession,
-  blend: BlendPart[],
-  feedId: string,
+  column: number,
   price: number,
 ): Pick<LeftOut, 'thenShareAsFed' | 'replaces'> {
   const { program, diet } = formulation
-  const column = diet.mix.find(({ feed }) => feed.id === feedId)!.column
+  const before = sharesOf(optimal, diet.mix.length)
   try {
     for (const step of JUST_BELOW) {
       deadline.left()
       warm.setCost(column, price * (1 - step))
       const outcome = warm.solve(deadline.until)
       if (outcome.status !== 'optimal') return {}
-      const then = blendOf(
-        formulation,
-        outcome.columns.map(({ value }) => value),
-      )
-      const entered = then.find((part) => part.feedId === feedId)
-      if (entered) return { thenShareAsFed: entered.shareAsFed, ...mostReplaced(blend, then) }
+      const then = sharesOf(outcome, diet.mix.length)
+      if (then[column]! <= NO_SHARE) continue
+      const falls = before.map((share, j) => share - then[j]!)
+      const most = falls.indexOf(Math.max(...falls))
+      const replaces = falls[most]! > NO_SHARE ? { replaces: diet.mix[most]!.feed.id } : {}
+      return { thenShareAsFed: then[column]!, ...replaces }
     }
     return {}
   } finally {
@@ -103,15 +104,9 @@ function enteringAt(
   }
 }
 
-function mostReplaced(before: BlendPart[], then: BlendPart[]): Pick<LeftOut, 'replaces'> {
-  const after = new Map(then.map((part) => [part.feedId, part.shareAsFed]))
-  let most = 1e-9
-  let replaces: string | undefined
-  for (const { feedId, shareAsFed } of before) {
-    const fall = shareAsFed - (after.get(feedId) ?? 0)
-    if (fall <= most) continue
-    most = fall
-    replaces = feedId
-  }
-  return replaces === undefined ? {} : { replaces }
+/** Shares as fed of the feeds of the mix, which are the first columns of the program. */
+function sharesOf({ columns }: OptimalOutcome, feeds: number): number[] {
+  let whole = 0
+  for (let j = 0; j < feeds; j++) whole += columns[j]!.value
+  return columns.slice(0, feeds).map(({ value }) => (whole > 0 ? value / whole : 0))
 }

@@ -1,7 +1,7 @@
 import { FORMULATION_VERSION, type Answer, type FormulationInput, type LeftOut } from '@maslin/shared'
 import { AnalysisStopped } from '../analysis'
-import { DEFAULT_DEADLINE_MS, solveLinearProgram, type EngineName, type LinearProgram } from '../lp'
-import { Deadline, OutOfTime } from './deadline'
+import { DEFAULT_DEADLINE_MS, type EngineName } from '../lp'
+import { Deadline, OutOfTime, solverWithin } from './deadline'
 import { answerInfeasible } from './impossible'
 import { answerOptimal, type SolveContext } from './optimalAnswer'
 import { buildProgram, type InvalidReason } from './program'
@@ -28,8 +28,7 @@ export async function solveMix(input: FormulationInput, options: SolveMixOptions
     return failed('invalid', built.excluded, 'The mix cannot be solved as it stands.', built.reasons)
   const { formulation } = built
   const deadline = new Deadline(options.deadlineMs ?? DEFAULT_DEADLINE_MS)
-  const { engine = 'auto' } = options
-  const solve = (lp: LinearProgram) => solveLinearProgram(lp, { engine, deadlineMs: deadline.left() })
+  const solve = solverWithin(deadline, options.engine)
   const context: SolveContext = {
     formulation,
     deadline,
@@ -43,10 +42,10 @@ export async function solveMix(input: FormulationInput, options: SolveMixOptions
         return await answerOptimal(context, outcome)
       case 'infeasible':
         return await answerInfeasible(context, outcome)
-      case 'unbounded':
-        return failed('unbounded', formulation.excluded, 'The cost can fall without end.')
       case 'stopped':
         return failed('stopped', formulation.excluded, outcome.detail)
+      case 'unbounded':
+        return failed('unbounded', formulation.excluded, 'The cost can fall without end.')
       case 'invalid':
         return failed(
           'invalid',

@@ -1,6 +1,7 @@
-import type { LinearProgram, OptimalOutcome, Outcome } from '../lp'
+import type { LinearProgram, OptimalOutcome } from '../lp'
 import { finishOptimum } from '../lp/answer'
 import { scaleProgram } from '../lp/scaled'
+import type { Solve } from './deadline'
 
 /** How much the second aim weighs beside the cost, tried from large to small. */
 const WEIGHTS = [1e-4, 1e-5, 1e-6]
@@ -20,11 +21,7 @@ export interface Settled {
  * the least by a second aim whose weights follow from the columns' ids. The basis found with the second aim added at a
  * small weight is solved again with the true costs, and taken only where it is certified and costs the same.
  */
-export async function settleTies(
-  lp: LinearProgram,
-  optimal: OptimalOutcome,
-  solve: (lp: LinearProgram) => Promise<Outcome>,
-): Promise<Settled> {
+export async function settleTies(lp: LinearProgram, optimal: OptimalOutcome, solve: Solve): Promise<Settled> {
   if (!mayTie(lp, optimal)) return { outcome: optimal, several: false }
   const chosen = await leaning(lp, optimal, 1, solve)
   if (!chosen) return { outcome: optimal, several: false }
@@ -56,7 +53,7 @@ async function leaning(
   lp: LinearProgram,
   optimal: OptimalOutcome,
   direction: 1 | -1,
-  solve: (lp: LinearProgram) => Promise<Outcome>,
+  solve: Solve,
 ): Promise<OptimalOutcome | undefined> {
   const scaled = scaleProgram(lp)
   const price = Math.max(...lp.columns.map(({ cost }) => Math.abs(cost)))
