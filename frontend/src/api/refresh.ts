@@ -43,9 +43,9 @@ async function renew(since: number): Promise<boolean> {
  * @throws where the API did not answer, so that nobody is signed out by a server that is down
  */
 export function refreshSession(since: number): Promise<boolean> {
-  underway ??= (
-    'locks' in navigator ? navigator.locks.request('maslin-session', () => renew(since)) : renew(since)
-  ).finally(() => {
+  // Missing where a page is not served securely.
+  const locks = navigator.locks as LockManager | null | undefined
+  underway ??= (locks ? locks.request('maslin-session', () => renew(since)) : renew(since)).finally(() => {
     underway = undefined
   })
   return underway
