@@ -1,4 +1,4 @@
-import { mkdtempSync, readFileSync, rmSync, statSync } from 'node:fs'
+import { existsSync, mkdtempSync, readFileSync, rmSync, statSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import type {
@@ -18,6 +18,8 @@ import { SolvingPool } from '../../backend/src/solving/pool'
 import { startTestApp, visit, type TestApp, type Visitor } from '../support/app'
 import { bodyOf, draftOf, solve, type TestFarm } from '../support/farm'
 import { signUp } from '../support/people'
+
+const noSolver = () => Promise.reject(new Error('no solver'))
 
 describe('the demo farm', () => {
   let test: TestApp
@@ -136,6 +138,37 @@ describe('the demo farm', () => {
     expect(await loadDemo(services)).toBeUndefined()
     expect(await test.database.models.users.count()).toBe(users)
     expect(readFileSync(join(directory, 'demo-sign-ins.json'), 'utf8')).toBe(before)
+  })
+
+  it('is loaded once where two servers start together', async () => {
+    const other = await startTestApp({
+      config: { demo: true, dataDirectory: join(directory, 'two') },
+      solving: pool,
+    })
+    try {
+      await loadBookFeeds(other.database, other.config.libraryDirectory)
+      const given = { ...services, config: other.config, database: other.database }
+      const loaded = await Promise.all([loadDemo(given), loadDemo(given)])
+      expect(loaded.filter(Boolean)).toHaveLength(1)
+      expect(await other.database.models.users.count()).toBe(new Set(signIns.map(({ email }) => email)).size)
+    } finally {
+      await other.close()
+    }
+  })
+
+  it('leaves nothing behind where it fails midway, so that the next start begins anew', async () => {
+    const dataDirectory = join(directory, 'half')
+    const other = await startTestApp({ config: { demo: true, dataDirectory } })
+    try {
+      await loadBookFeeds(other.database, other.config.libraryDirectory)
+      const solving = { ready: () => Promise.resolve(true), traceCurve: noSolver, solveMix: noSolver }
+      const given = { ...services, config: other.config, database: other.database, solving }
+      await expect(loadDemo(given)).rejects.toThrow('no solver')
+      expect(await other.database.models.users.count()).toBe(0)
+      expect(existsSync(join(dataDirectory, 'demo-sign-ins.json'))).toBe(false)
+    } finally {
+      await other.close()
+    }
   })
 
   it('stays away where it is turned off or somebody is there already', async () => {

@@ -77,6 +77,17 @@ describe('mixes', () => {
     expect((await get(mix.id)).name).toBe('Theirs')
   })
 
+  it('takes one of two changes made at the same moment', async () => {
+    const mix = await add()
+    const answers = await Promise.all(['One', 'Two', 'Three'].map((name) => put(mix, { ...draft, name })))
+    const taken = answers.filter(({ status }) => status === 200)
+    expect(taken).toHaveLength(1)
+    for (const { status, body } of answers) {
+      if (status !== 200) expect(body).toMatchObject({ code: 'stale_version' })
+    }
+    expect(await get(mix.id)).toEqual(taken[0]?.body)
+  })
+
   it('keeps the whole mix as it was where one of its feeds is not the farm’s', async () => {
     const mix = await add()
     const other = await signUp(farm.test, 'Neighbour')

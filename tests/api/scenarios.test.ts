@@ -105,6 +105,17 @@ describe('scenarios', () => {
     expect((await open(scenario)).revisionCount).toBe(2)
   })
 
+  it('takes one of two revisions, and of two submissions, made at the same moment', async () => {
+    const scenario = await saveScenario(farm, draft)
+    const revisions = await Promise.all([revise(scenario), revise(scenario), revise(scenario)])
+    expect(revisions.map(({ status }) => status).sort()).toEqual([201, 409, 409])
+    const latest = await open(scenario)
+    expect(latest.revisions.map(({ revision }) => revision)).toEqual([1, 2])
+    const submissions = await Promise.all([submit(latest), submit(latest)])
+    expect(submissions.map(({ status }) => status).sort()).toEqual([200, 409])
+    expect((await open(scenario)).comments).toHaveLength(1)
+  })
+
   it('can be renamed', async () => {
     const scenario = await saveScenario(farm, draft)
     const rename = (version: Scenario) =>
