@@ -19,7 +19,7 @@ import { FAMILIES, randomMix, randomMixes } from './lp-random'
 
 const PROBLEMS = 1000
 const RELATIVE = 1e-6
-const PRICED = 120
+const PRICED = 75
 /** Processes of glpsol side by side. */
 const AT_ONCE = 8
 
