@@ -1,4 +1,5 @@
 export default {
+  title: 'Your account',
   menu: '{initials}: your account',
   signOut: 'Sign out',
   appearance: { label: 'Appearance', system: 'As the device', light: 'Light', dark: 'Dark' },
