@@ -167,6 +167,7 @@ describe('rows that cannot be used', () => {
     ['Barley grain,Tarn Mill,50 lb,-5,2026-01-05', 'price', 'negativePrice', '-5'],
     ['Barley grain,Tarn Mill,50 lb,0.00,2026-01-05', 'price', 'zeroPrice', '0.00'],
     ['Barley grain,Tarn Mill,50 lb,9999999999,2026-01-05', 'price', 'priceTooLarge', '9999999999'],
+    ['Barley grain,Tarn Mill,1 g,10001,2026-01-05', 'price', 'priceTooLarge', '10001'],
     ['Barley grain,Tarn Mill,50 lb,1,', 'date', 'missingDate', ''],
     ['Barley grain,Tarn Mill,50 lb,1,2026-02-30', 'date', 'unreadableDate', '2026-02-30'],
     ['Barley grain,Tarn Mill,50 lb,1,2099-01-01', 'date', 'futureDate', '2099-01-01'],

@@ -109,6 +109,22 @@ describe('an offer', () => {
   })
 })
 
+describe('a price that no feed has', () => {
+  const perGram = { packageQuantity: 1, packageUnit: 'g', price: '10001', date: '2026-01-05' } as const
+  const refused = { status: 400, errors: [{ path: 'price', code: 'too_much_per_kg' }] }
+
+  it('is refused with the offer, later, and when the package shrinks', async () => {
+    const ids = await feedAndSupplier()
+    expect((await api.post('/offers', { ...ids, ...perGram })).body).toMatchObject(refused)
+    const { id } = await api.makeOffer({ ...ids, ...perGram, price: '9999' })
+    const dear = await api.post(`/offers/${id}/prices`, { date: '2026-02-01', price: '10001' })
+    expect(dear.body).toMatchObject(refused)
+    expect((await api.patch(`/offers/${id}`, 1, { packageQuantity: 0.9 })).body).toMatchObject(refused)
+    const { items } = (await api.get(`/offers/${id}/prices`)).body as { items: Price[] }
+    expect(items.map(({ price }) => price)).toEqual(['9999'])
+  })
+})
+
 describe('prices by day', () => {
   it('answer with the latest one on or before the day', async () => {
     const ids = await feedAndSupplier()

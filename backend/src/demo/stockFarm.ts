@@ -22,9 +22,9 @@ async function addMembers({ farm, farmId, people, as }: DemoSite): Promise<void>
   await owner.audit.record({ action: 'create', entity: 'farm', entityId: farmId, after: { name: farm.name } })
 }
 
-async function addFeeds({ farm, database, as, feedIds }: DemoSite): Promise<void> {
+async function addFeeds({ farm, as, feedIds }: DemoSite): Promise<void> {
   const owner = as(ownerOf(farm))
-  const { items } = await copyBookFeeds(database, owner, farm.bookFeeds)
+  const { items } = await copyBookFeeds(owner, farm.bookFeeds)
   for (const { id, bookKey } of items) if (bookKey) feedIds.set(bookKey, id)
   for (const { ref, values, source, status, ...rest } of farm.ownFeeds) {
     const known = Object.entries(values).map(([nutrient, value]) => [nutrient, { value, source, status }])

@@ -1,8 +1,9 @@
-import { Op, QueryTypes, type Transaction } from 'sequelize'
+import { Op, QueryTypes, UniqueConstraintError, type Transaction } from 'sequelize'
 import { v7 as uuidv7 } from 'uuid'
 import type { Role, UnitSystem } from '@maslin/shared'
 import type { Database } from '../database/database'
 import type { FarmAccountRow, MembershipRow, RefreshTokenRow, SessionRow, UserRow } from '../models/accounts'
+import { AppError } from '../errors'
 import { plain } from './farmTable'
 
 export type { RefreshTokenRow, SessionRow, UserRow } from '../models/accounts'
@@ -25,14 +26,17 @@ export function accounts(database: Database, transaction: Transaction | null = n
       return (await models.users.findOne({ attributes: ['id'], transaction })) !== null
     },
 
-    async users(ids: readonly string[]): Promise<UserRow[]> {
-      return (await models.users.findAll({ where: { id: [...ids] }, transaction })).map(plain<UserRow>)
-    },
-
-    /** The database's unique key refuses a second account with one e-mail address. */
+    /** @throws AppError `email_taken`, also where two sign-ups race */
     async addUser(values: Pick<UserRow, 'name' | 'email' | 'passwordHash'>): Promise<UserRow> {
       const row = { id: uuidv7(), ...values, ...times }
-      await models.users.create(row, { transaction })
+      try {
+        await models.users.create(row, { transaction })
+      } catch (error) {
+        if (!(error instanceof UniqueConstraintError)) throw error
+        const message = 'There is an account with this e-mail address already.'
+        const errors = [{ path: 'email', code: 'taken', message }]
+        throw new AppError('email_taken', { detail: message, errors, cause: error })
+      }
       return row
     },
 

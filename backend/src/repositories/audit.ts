@@ -1,10 +1,6 @@
 import type { Transaction } from 'sequelize'
 import { v7 as uuidv7 } from 'uuid'
 import type { Models } from '../models'
-import type { AuditEventRow } from '../models/accounts'
-import { plain, scoped } from './farmTable'
-
-export type { AuditEventRow } from '../models/accounts'
 
 export interface AuditEntry {
   /** `create`, `update`, `delete`, or what the trade calls it: `submit`, `approve`, `import`. */
@@ -47,19 +43,5 @@ export class AuditTrail {
       },
       { transaction: this.transaction },
     )
-  }
-
-  /** Newest first. */
-  async list(limit: number): Promise<AuditEventRow[]> {
-    const rows = await this.models.auditEvents.findAll({
-      where: scoped<AuditEventRow>(this.farmId, {}),
-      order: [
-        ['createdAt', 'DESC'],
-        ['id', 'DESC'],
-      ],
-      limit,
-      transaction: this.transaction,
-    })
-    return rows.map(plain<AuditEventRow>)
   }
 }

@@ -1,6 +1,7 @@
 import type { Transaction } from 'sequelize'
 import type { Database } from '../database/database'
 import { AuditTrail, type Actor } from './audit'
+import { bookFeeds } from './bookFeeds'
 import { FarmAccount } from './farms'
 import { FarmTable } from './farmTable'
 import { FeedValueTable } from './feeds'
@@ -24,6 +25,7 @@ export function inFarm(database: Database, farmId: string, transaction: Transact
     account: new FarmAccount(models, ...parts),
     members: new FarmTable(models.memberships, ...parts),
     people: new People(models, transaction),
+    book: bookFeeds(database, transaction),
     feeds: new FarmTable(models.feeds, ...parts),
     feedValues: new FeedValueTable(models.feedValues, farmId, transaction),
     suppliers: new FarmTable(models.suppliers, ...parts),

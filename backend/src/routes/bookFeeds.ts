@@ -18,6 +18,6 @@ export const bookFeedRoutes = [
     body: feedCopySchema,
     answer: z.object({ items: z.array(feedSchema), skipped: z.array(z.string()) }),
     status: 201,
-    handle: ({ body, database, inFarm }) => inFarm((farm) => copyBookFeeds(database, farm, body.bookKeys)),
+    handle: ({ body, inFarm }) => inFarm((farm) => copyBookFeeds(farm, body.bookKeys)),
   }),
 ]

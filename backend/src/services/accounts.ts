@@ -60,7 +60,6 @@ export async function signUp(
   const passwordHash = await hashPassword(password)
   const { user, tokens } = await database.transaction(async (transaction) => {
     const people = accounts(database, transaction)
-    if (await people.userByEmail(email)) throw emailTaken()
     const user = await people.addUser({ name, email, passwordHash })
     const account = await people.addFarm({ name: farmName, units, currency })
     const farm = inFarm(database, account.id, transaction, { userId: user.id, requestId })
@@ -74,14 +73,6 @@ export async function signUp(
     return { user, tokens: await beginSession(people, user.id, jwtSecret) }
   })
   return { session: await describeSession(database, user), tokens }
-}
-
-function emailTaken(): AppError {
-  const message = 'There is an account with this e-mail address already.'
-  return new AppError('email_taken', {
-    detail: message,
-    errors: [{ path: 'email', code: 'taken', message }],
-  })
 }
 
 /** @throws AppError `wrong_sign_in`, without telling whether there is such an account */

@@ -42,12 +42,11 @@ export interface CopyResult {
  * @throws AppError `invalid_input` for keys the book does not have, `name_taken` where a feed of the farm's own has the name
  */
 export async function copyBookFeeds(
-  database: Database,
   farm: FarmRepositories,
   bookKeys: readonly string[],
 ): Promise<CopyResult> {
   const wanted = [...new Set(bookKeys)]
-  const found = new Map((await bookFeeds(database).list(wanted)).map((feed) => [feed.key, feed]))
+  const found = new Map((await farm.book.list(wanted)).map((feed) => [feed.key, feed]))
   const missing = wanted.find((key) => !found.has(key))
   if (missing !== undefined) {
     throw invalidField(

@@ -43,6 +43,19 @@ export function perKg(
   }
 }
 
+/** More per kg than any feed costs: a slip of the unit or the decimal sign. The solver counts on it. */
+export const MOST_PER_KG = 1e7
+
+/** @throws AppError `invalid_input` */
+function requirePlausible({ current }: Offer): void {
+  if (!current?.perKgAsFed || new Decimal(current.perKgAsFed).lessThan(MOST_PER_KG)) return
+  throw invalidField(
+    'price',
+    'too_much_per_kg',
+    `That is ${current.perKgAsFed} per kg: look at the package and its unit.`,
+  )
+}
+
 export const packageKgOf = (row: {
   packageQuantity: string | number
   packageUnit: PackageUnit
@@ -90,7 +103,8 @@ export interface PricedOffer extends PerKg {
 
 /**
  * Offers with a price on or before the day (`YYYY-MM-DD`), by feed, the cheapest per kg as fed first. Offers whose
- * package has no known weight (a bushel without a test weight) are left out: they cannot be compared.
+ * package has no known weight (a bushel without a test weight) are left out: they cannot be compared. So are those that
+ * a later change of their feed made dearer than any feed is.
  */
 export async function pricesAsOf(farm: FarmRepositories, date: string): Promise<Map<string, PricedOffer[]>> {
   const byFeed = new Map<string, PricedOffer[]>()
@@ -107,6 +121,7 @@ export async function pricesAsOf(farm: FarmRepositories, date: string): Promise<
     } = toOffer(row)
     if (!current?.perKgAsFed || !current.perKgDryMatter || packageKg === undefined) continue
     const { price, perKgAsFed, perKgDryMatter } = current
+    if (new Decimal(perKgAsFed).greaterThanOrEqualTo(MOST_PER_KG)) continue
     const offer = { offerId, supplierName, packageQuantity, packageUnit, packageKg, price, freight }
     const offers = byFeed.get(feedId) ?? []
     offers.push({ ...offer, perKgAsFed, perKgDryMatter, date: current.date })
@@ -163,6 +178,7 @@ export async function createOffer(
   const day = date ?? today(farm.now)
   if (price !== undefined) await putPrice(farm, id, { date: day, price })
   const offer = await getOffer(farm, id, day)
+  requirePlausible(offer)
   await farm.audit.record({ action: 'create', entity: 'offer', entityId: id, after: offer })
   return offer
 }
@@ -184,6 +200,7 @@ export async function updateOffer(
   if (row.version === version) await requireNewPackage(farm, { ...row, ...wanted }, id)
   await farm.offers.update(id, version, wanted)
   const after = await getOffer(farm, id)
+  requirePlausible(after)
   await farm.audit.record({ action: 'update', entity: 'offer', entityId: id, before, after })
   return after
 }
@@ -205,7 +222,9 @@ export async function removeOffer(farm: FarmRepositories, id: string, version: n
 export async function setPrice(farm: FarmRepositories, offerId: string, price: PriceSet): Promise<Offer> {
   await farm.offers.get(offerId, { forUpdate: true })
   await putPrice(farm, offerId, price)
-  return getOffer(farm, offerId, price.date)
+  const offer = await getOffer(farm, offerId, price.date)
+  requirePlausible(offer)
+  return offer
 }
 
 /** Quantities are stored with six places. */

@@ -8,9 +8,10 @@ import type { PriceImportRow } from '../repositories/prices'
 import { today } from './changes'
 import { guessMapping, missingFields } from './priceImport/mapping'
 import { NameIndex, nameKey } from './priceImport/names'
-import { offerKey, planImport, type Existing, type Plan, type PlannedPrice } from './priceImport/plan'
+import { offerKey, planImport, type Existing, type Plan } from './priceImport/plan'
 import { readRow, type ImportFeed, type RowOutcome } from './priceImport/rows'
 import { readTable } from './priceImport/table'
+import { writePrices } from './priceImport/write'
 import { quantityText } from './offers'
 
 type PreviewRequest = z.output<typeof importPreviewRequestSchema>
@@ -75,7 +76,7 @@ export async function applyImport(
     leftOut: plan.rows.filter(({ state }) => state === 'error' || state === 'leftOut'),
     userId: requireUser(farm),
   })
-  const replaced = await write(farm, row.id, plan.writes, existing)
+  const replaced = await writePrices(farm, row.id, plan.writes, existing)
   await farm.audit.record({
     action: 'import',
     entity: 'priceImport',
@@ -197,59 +198,6 @@ async function readExisting(
       ] as const,
   )
   return { suppliers, offers: new Map(offers), prices }
-}
-
-/** @returns the prices that were replaced, for the record */
-async function write(
-  farm: FarmRepositories,
-  importId: string,
-  writes: readonly PlannedPrice[],
-  existing: Existing,
-) {
-  const supplierIds = new Map([...existing.suppliers].map(([key, { id }]) => [key, id]))
-  const newSuppliers = new Map(
-    writes
-      .filter((it) => !supplierIds.has(it.supplierKey))
-      .map((it) => [it.supplierKey, it.reading.supplierName]),
-  )
-  const supplierRows = await farm.suppliers.insertMany(
-    [...newSuppliers.values()].map((name) => ({ name, note: null })),
-  )
-  for (const row of supplierRows) supplierIds.set(nameKey(row.name), row.id)
-  const idOfSupplier = (key: string) => {
-    const id = supplierIds.get(key)
-    if (!id) throw new Error('a supplier of the list was not made')
-    return id
-  }
-
-  const offerIds = new Map([...existing.offers].map(([key, { id }]) => [key, id]))
-  const newOffers = new Map(writes.filter((it) => !offerIds.has(it.offerKey)).map((it) => [it.offerKey, it]))
-  const offerRows = await farm.offers.insertMany(
-    [...newOffers.values()].map(({ reading, supplierKey }) => ({
-      supplierId: idOfSupplier(supplierKey),
-      feedId: reading.feed.id,
-      packageQuantity: quantityText(reading.packageQuantity),
-      packageUnit: reading.packageUnit,
-      freight: '0',
-    })),
-  )
-  ;[...newOffers.keys()].forEach((key, at) => offerIds.set(key, offerRows[at]?.id ?? ''))
-
-  const added = writes.filter((it) => !it.replaces)
-  await farm.prices.insertMany(
-    added.map(({ reading, offerKey: key }) => ({
-      offerId: offerIds.get(key) ?? '',
-      date: reading.date,
-      price: reading.price,
-      source: 'import' as const,
-      importId,
-    })),
-  )
-  const replaced = writes.flatMap(({ reading, replaces }) => (replaces ? [{ ...replaces, reading }] : []))
-  for (const { id, reading } of replaced) {
-    await farm.prices.overwrite(id, { price: reading.price, source: 'import', importId })
-  }
-  return replaced.map(({ id, price, reading }) => ({ id, date: reading.date, price }))
 }
 
 function unusedColumns({ mapping, header, width }: ReadList): string[] {

@@ -9,6 +9,7 @@ import {
   type PackageUnit,
   type importProblemCodes,
 } from '@maslin/shared'
+import { MOST_PER_KG } from '../offers'
 import { parseDay } from './dates'
 import type { NameIndex, Named } from './names'
 import type { TableRow } from './table'
@@ -85,6 +86,7 @@ export function readRow({ line, cells }: TableRow, rules: ReadingRules): RowOutc
   const packageKg = pack && feed ? packageWeightKg(pack.quantity, pack.unit, feed.testWeightKg) : undefined
   if (pack && feed && packageKg === undefined) fail(pack.field, 'noTestWeight')
   const price = readPrice(cell('price'), rules.mapping, fail)
+  if (price && packageKg && Number(price) / packageKg >= MOST_PER_KG) fail('price', 'priceTooLarge')
   const date = readDate(cell('date'), rules, fail)
   if (problems.length > 0 || !feed || !supplierName || !pack || !packageKg || !price || !date) {
     return { line, cells, kind: 'error', problems }
