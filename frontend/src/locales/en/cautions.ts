@@ -63,10 +63,6 @@ export default {
     },
     copperLow: {
       title: 'Copper, sheep.',
-      text: 'The diet holds {totalPerKg} mg of copper per kg of dry matter, {assumedShare} of it assumed; sheep slowly store it above {limit}. No added copper may go in.',
-    },
-    copperLow: {
-      title: 'Copper, sheep.',
       text: 'The diet holds {totalPerKg} mg of copper per kg of dry matter, {assumedShare} of it assumed; that is not above {limit}. No added copper may go in.',
     },
     copperWarn: {

@@ -77,6 +77,20 @@ describe('edits of a draft', () => {
     })
   })
 
+  it('move a bound, and the other one where it is in the way or the same figure', () => {
+    const window = edits.setBounds(draft, 'cp', { min: 100, max: 200 })
+    expect(edits.limitOf(edits.setBound(window, 'cp', 'min', 150), 'cp')).toMatchObject({
+      min: 150,
+      max: 200,
+    })
+    expect(edits.limitOf(edits.setBound(window, 'cp', 'min', 250), 'cp')).toMatchObject({
+      min: 250,
+      max: 250,
+    })
+    const exact = edits.setBounds(draft, 'cp', { min: 200, max: 200 })
+    expect(edits.limitOf(edits.setBound(exact, 'cp', 'max', 180), 'cp')).toMatchObject({ min: 180, max: 180 })
+  })
+
   it('refuse a limit without a bound', () =>
     expect(() => edits.addLimit(draft, { id: 'x', kind: 'intake' })).toThrow())
 

@@ -67,8 +67,16 @@ function withBounds(limit: Limit, { min, max }: Bounds, reason?: string): Limit 
   }
 }
 
-export const setBound = (draft: MixDraft, limitId: string, side: 'min' | 'max', value: number): MixDraft =>
-  changeLimit(draft, limitId, (limit) => ({ ...limit, [side]: value }))
+/** Moves one bound. The other one gives way where the two would cross, and goes along where they were one figure. */
+export function setBound(draft: MixDraft, limitId: string, side: 'min' | 'max', value: number): MixDraft {
+  return changeLimit(draft, limitId, (limit) => {
+    const other = side === 'min' ? 'max' : 'min'
+    const stays = limit[other]
+    const crossed = stays !== undefined && (side === 'min' ? value > stays : value < stays)
+    const together = stays !== undefined && stays === limit[side]
+    return { ...limit, [side]: value, ...(crossed || together ? { [other]: value } : {}) }
+  })
+}
 
 export const setEnabled = (draft: MixDraft, limitId: string, enabled: boolean): MixDraft =>
   changeLimit(draft, limitId, (limit) => ({ ...limit, enabled }))

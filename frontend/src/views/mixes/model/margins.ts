@@ -30,29 +30,36 @@ export function dearness(result: LimitResult): number {
   return Math.max(price(result.raise), price(result.lower)) * Math.abs(boundOf(result)) * 0.01
 }
 
-/**
- * A round step for the words, in the shown unit: about a twentieth of the bound, and never past the nearer end of a range
- * over which the price holds.
- */
-export function stepOf(result: LimitResult, measure: Measure): number {
-  const bound = boundOf(result)
-  const whole = Math.abs(measure.shown(bound)) || 1
-  const reaches = [result.raise, result.lower]
-    .filter((margin) => margin?.perUnit !== undefined && margin.until !== undefined)
-    .map((margin) => Math.abs(measure.shown((margin?.until ?? bound) - bound)))
-    .filter((reach) => reach > whole * 1e-6)
-  return niceStep(Math.min(whole * 0.05, ...reaches))
+/** A step of one direction, on the shown axis. */
+interface Step {
+  size: number
+  /** The price holds for no more than a sliver of the bound, so that the step is told as a rate. */
+  rate: boolean
 }
 
-/** Change of cost by one step in a direction, in the cost basis times `factor`; undefined where the move is impossible. */
-export function stepCost(
+/**
+ * A round step for the words, in the shown unit: about a twentieth of the bound, less where the price holds for less, so
+ * that what is said is true for the whole step.
+ */
+export function stepOf(margin: Margin, result: LimitResult, measure: Measure): Step {
+  const bound = boundOf(result)
+  const whole = Math.abs(measure.shown(bound)) || 1
+  const reach = margin.until === undefined ? Infinity : Math.abs(measure.shown(margin.until - bound))
+  if (reach < whole * 0.002) return { size: niceStep(whole * 0.01), rate: true }
+  return { size: niceStep(Math.min(whole * 0.05, reach)), rate: false }
+}
+
+/**
+ * Change of cost by one percent of the bound at today's margin, in the cost basis times `factor`; undefined where the move
+ * is impossible. Sets limits of different units side by side.
+ */
+export function percentCost(
   margin: Margin | undefined,
-  step: number,
-  measure: Measure,
+  result: LimitResult,
   factor: number,
 ): number | undefined {
   if (!margin || margin.impossible || margin.perUnit === undefined) return undefined
-  return margin.perUnit * measure.stored(step) * factor
+  return margin.perUnit * Math.abs(boundOf(result)) * 0.01 * factor
 }
 
 /** A value told apart from the bound it starts at: with more digits where the usual ones would print the same. */
@@ -67,7 +74,6 @@ function until(value: number, bound: number, measure: Measure): string {
 function direction(
   margin: Margin | undefined,
   way: 'more' | 'less',
-  step: number,
   result: LimitResult,
   measure: Measure,
   factor: number,
@@ -76,19 +82,16 @@ function direction(
   if (!margin) return undefined
   if (margin.impossible || margin.perUnit === undefined)
     return rich(words, `mixes.margin.${way}.impossible`, {})
-  const bound = boundOf(result)
-  const change = margin.perUnit * measure.stored(step) * factor
+  const { size, rate } = stepOf(margin, result, measure)
+  const change = margin.perUnit * measure.stored(size) * factor
   const kind =
     Math.abs(change) < 0.005 ? (change === 0 ? 'nothing' : 'hardly') : change > 0 ? 'costs' : 'saves'
   const amount: Run = { text: words.q.money(Math.abs(change)), tone: change > 0 ? 'cost' : 'save' }
-  const parts = { step: measure.difference(step), amount }
+  const parts = { step: measure.difference(size), amount }
+  if (rate) return rich(words, `mixes.margin.${way}.${kind}Here`, parts)
   if (margin.until === undefined) return rich(words, `mixes.margin.${way}.${kind}`, parts)
-  const reach = Math.abs(margin.until - bound)
-  if (reach <= Math.abs(bound) * 1e-6) return rich(words, `mixes.margin.${way}.${kind}Here`, parts)
-  return rich(words, `mixes.margin.${way}.${kind}Until`, {
-    ...parts,
-    until: until(margin.until, bound, measure),
-  })
+  const end = until(margin.until, boundOf(result), measure)
+  return rich(words, `mixes.margin.${way}.${kind}Until`, { ...parts, until: end })
 }
 
 /**
@@ -98,10 +101,9 @@ function direction(
  */
 export function marginSentences(result: LimitResult, measure: Measure, factor: number, words: Words): Run[] {
   if (result.state === 'tight' && !result.raise && !result.lower) return rich(words, 'mixes.margin.tight', {})
-  const step = stepOf(result, measure)
   const ways = [
-    direction(result.raise, 'more', step, result, measure, factor, words),
-    direction(result.lower, 'less', step, result, measure, factor, words),
+    direction(result.raise, 'more', result, measure, factor, words),
+    direction(result.lower, 'less', result, measure, factor, words),
   ]
   return joined(ways.filter((runs): runs is Run[] => runs !== undefined))
 }

@@ -1,4 +1,4 @@
-import { amountUnit, type Basis, type FeedClass, type Limit } from '@maslin/shared'
+import { amountUnit, convertMass, type Basis, type FeedClass, type Limit } from '@maslin/shared'
 import type { Words } from './words'
 
 /** How the figures of one limit are shown and typed: the limit's stored unit to the farm's and back, with unit and basis. */
@@ -21,14 +21,18 @@ interface Conversion {
   isPercent: boolean
 }
 
+/** Pounds or kilograms; ounces or grams where the bounds are below a tenth of those. */
+function weightConversion({ min, max }: Limit, { q }: Words): Conversion {
+  const isSmall = Math.max(min ?? 0, max ?? 0) > 0 && q.shownWeight(Math.max(min ?? 0, max ?? 0)) < 0.1
+  const whole = q.weightUnit.value
+  const unit = isSmall ? (whole === 'lb' ? 'oz' : 'g') : whole
+  return { unit: q.unitLabel(unit), factor: convertMass(1, 'kg', unit), isPercent: false }
+}
+
 /** How stored figures of the limit become shown ones. */
 function conversionOf(limit: Limit, words: Words): Conversion {
   const { q } = words
-  const weight: Conversion = {
-    unit: q.unitLabel(q.weightUnit.value),
-    factor: q.shownWeight(1),
-    isPercent: false,
-  }
+  const weight = weightConversion(limit, words)
   switch (limit.kind) {
     case 'nutrient':
       if (limit.measure === 'perHeadDay')

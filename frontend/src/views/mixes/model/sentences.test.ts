@@ -5,7 +5,7 @@ import { wordsForTests } from '../testing/words'
 import { conflictSentence, looseningText } from './conflict'
 import { byReplaced, leftOutSentence } from './leftOut'
 import { limitRows } from './limitRows'
-import { groupPeriodFactor, marginSentences, stepOf } from './margins'
+import { groupPeriodFactor, marginSentences, percentCost, stepOf } from './margins'
 import { boundsText, limitName, measureOf, niceStep } from './measures'
 import { perKgOf } from './prices'
 import { proofDetails, proofLevel } from './proof'
@@ -41,10 +41,10 @@ describe('margins in words', () => {
     expect(say('protein')).toBe('10 g more costs $1.70, up to 233 g. 10 g less saves $1.70, down to 189 g.')
   })
 
-  it('takes a step that stays within the nearer end of the range', () => {
-    // 4.40 − 4.31 = 0.09 Mcal, so 0.05 and not 0.2: 0.05 × 0.19254 × 1140 = 10.97
+  it('takes a step that stays within the range of its own direction', () => {
+    // up 0.22 Mcal, so 0.2: 0.2 × 0.19254 × 1140 = 43.90; down 0.09, so 0.05: 10.97
     expect(say('energy')).toBe(
-      '0.05 Mcal more costs $10.97, up to 4.62 Mcal. 0.05 Mcal less saves $10.97, down to 4.31 Mcal.',
+      '0.2 Mcal more costs $43.90, up to 4.62 Mcal. 0.05 Mcal less saves $10.97, down to 4.31 Mcal.',
     )
   })
 
@@ -66,14 +66,14 @@ describe('margins in words', () => {
   })
 
   it('does not let the end of a range print like the bound it starts at', () => {
-    const change = { raise: { perUnit: 0.0001491, until: 214.2, impossible: false } }
-    expect(say('protein', change)).toContain('up to 214.2 g')
+    const change = { raise: { perUnit: 0.0001491, until: 214.45, impossible: false } }
+    expect(say('protein', change)).toContain('up to 214.5 g')
   })
 
   it('says that a price ends where it starts', () => {
     const change = { raise: { perUnit: 0.0001491, until: 214, impossible: false } }
     expect(say('protein', change)).toContain(
-      '10 g more would cost about $1.70, and the price changes from here on.',
+      '2 g more would cost about $0.34, and the price changes from here on.',
     )
   })
 
@@ -103,13 +103,14 @@ describe('margins in words', () => {
   ])('rounds $value down to $step', ({ value, step }) => expect(niceStep(value)).toBeCloseTo(step, 12))
 
   it('has a step even for a limit at nothing', () => {
-    const none = result('copper', {
-      value: 0,
-      max: 0,
-      bindingSide: 'max',
-      raise: { perUnit: -1, impossible: false },
-    })
-    expect(stepOf(none, measure('copper'))).toBeGreaterThan(0)
+    const none = result('copper', { value: 0, max: 0, bindingSide: 'max' })
+    expect(stepOf({ perUnit: -1, impossible: false }, none, measure('copper')).size).toBeGreaterThan(0)
+  })
+
+  it('sets limits side by side by one percent of each', () => {
+    // 1 % of 214 g: 2.14 × 0.0001491 × 1140
+    expect(percentCost(result('protein').raise, result('protein'), period)).toBeCloseTo(0.36374, 4)
+    expect(percentCost(result('starch').lower, result('starch'), period)).toBeUndefined()
   })
 
   it('uses the money of the whole group in 30 days, for a batch by its own ratio', () => {
