@@ -24,6 +24,10 @@ export interface SuggestedFeeds {
 export interface Ceiling extends DefaultFigure {
   id: string
   feedClass: FeedClass
+  /** Only the feed copied from this book feed; absent: the whole class. */
+  bookKey?: string
+  /** The phases it holds for; absent: all. */
+  phases?: Phase[]
   /** True: for each feed of the class; false: for the class together. */
   each: boolean
   measure: 'shareOfDryMatter' | 'shareAsFed'
@@ -61,8 +65,8 @@ export interface FirstMixDefaults {
   /** mg per kg of diet dry matter. */
   copper: { warnAbove: DefaultFigure; stopAbove: DefaultFigure }
   margins: { minimaMetWith: DefaultFigure; toxicMaximaMetWith: DefaultFigure }
-  /** A loose mineral at its rate, kg as fed per head and day. */
-  mineral: Partial<Record<Species, DefaultFigure & { feedKey: string }>>
+  /** A loose mineral at its rate, kg as fed per head and day, and its greatest share of the expected intake, 0 to 1. */
+  mineral: Partial<Record<Species, DefaultFigure & { feedKey: string }>> & { maxShareOfIntake: DefaultFigure }
   suggestedFeeds: SuggestedFeeds[]
 }
 

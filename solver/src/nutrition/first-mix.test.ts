@@ -2,7 +2,7 @@ import { limitSchema, type Limit, type Requirement } from '@maslin/shared'
 import { describe, expect, it } from 'vitest'
 import book from '../../../data/first-mix.json'
 import { suggestedFeeds, type FirstMixDefaults } from './defaults'
-import { firstMixLimits, offeredLimits, type FirstMixFeed, type FirstMixGroup } from './first-mix'
+import { ceilingLimits, firstMixLimits, type FirstMixFeed, type FirstMixGroup } from './first-mix'
 import { defaultSubstitution, fibreCapIntake } from './forage'
 
 const defaults = book as FirstMixDefaults
@@ -79,7 +79,10 @@ describe('firstMixLimits', () => {
   })
 
   it('takes starch where every feed knows it, else NFC', () => {
-    const starchy = [feed('a', { values: { starch: {} } }), feed('b', { values: { starch: {} } })]
+    const starchy = [
+      feed('a', { values: { starch: { value: 500 } } }),
+      feed('b', { values: { starch: { value: 20 } } }),
+    ]
     expect(
       byId(firstMixLimits(defaults, ewes, requirement, { basis: 'perHead', feeds: starchy })).starch,
     ).toMatchObject({
@@ -146,18 +149,66 @@ describe('firstMixLimits', () => {
   })
 })
 
-describe('offeredLimits', () => {
-  it('offers a ceiling for each by-product, one for molasses, and sulphur', () => {
-    const feeds = [
-      feed('hulls', { class: 'byProduct' }),
-      feed('bran', { class: 'byProduct' }),
-      feed('m', { class: 'molasses' }),
-    ]
-    const rows = byId(offeredLimits(defaults, ewes, feeds))
-    expect(Object.keys(rows)).toEqual(['byProducts-hulls', 'byProducts-bran', 'molasses', 'sulfur'])
+describe('the loose mineral of a small animal', () => {
+  const kids: FirstMixGroup = { species: 'goat', phase: 'growing', male: true }
+  const small = { ...requirement, intakeDryMatterKg: 0.6 }
+  const mineral = feed('mineral-1', { bookKey: 'goat-mineral', class: 'premix', dryMatter: 0.96 })
+
+  it('is 0.8 % of what it eats, not the rate of a grown one', () => {
+    const rows = byId(firstMixLimits(defaults, kids, small, { basis: 'perHead', feeds: [mineral] }))
+    expect(rows.mineral?.min).toBeCloseTo(0.005, 12)
+    expect(rows.mineral?.max).toBeCloseTo(0.005, 12)
+    const batch = byId(firstMixLimits(defaults, kids, small, { basis: 'batch', feeds: [mineral] }))
+    expect(batch.mineral).toMatchObject({ min: 0.008, max: 0.008 })
+  })
+
+  it('brings no more than 0.3 mg added selenium per kg of diet, whatever the animal eats', () => {
+    for (const intakeDryMatterKg of [0.4, 0.6, 1.2, 2, 3.5]) {
+      const rows = byId(
+        firstMixLimits(defaults, kids, { ...small, intakeDryMatterKg }, { basis: 'batch', feeds: [mineral] }),
+      )
+      expect((rows.mineral?.max ?? NaN) * 30).toBeLessThanOrEqual(0.3)
+    }
+  })
+})
+
+describe('ceilingLimits', () => {
+  const hulls = feed('hulls', { class: 'byProduct' })
+  const limestone = feed('lime', { class: 'mineral', bookKey: 'limestone' })
+  const salt = feed('nacl', { class: 'mineral', bookKey: 'salt' })
+
+  it('caps each by-product, and molasses', () => {
+    const feeds = [hulls, feed('bran', { class: 'byProduct' }), feed('m', { class: 'molasses' })]
+    const rows = byId(ceilingLimits(defaults, ewes, feeds))
+    expect(Object.keys(rows)).toEqual(['byProducts-hulls', 'byProducts-bran', 'molasses'])
     expect(rows['byProducts-hulls']).toMatchObject({ max: 0.2, within: 'diet' })
     expect(rows.molasses).toMatchObject({ max: 0.05, measure: 'shareAsFed' })
-    expect(rows.sulfur).toMatchObject({ max: 4 })
+  })
+
+  it('keeps minerals together and salt from filling a mix', () => {
+    const rows = byId(ceilingLimits(defaults, ewes, [limestone, salt]))
+    expect(Object.keys(rows)).toEqual(['minerals', 'salt-nacl'])
+    expect(rows.minerals).toMatchObject({ of: { by: 'class', class: 'mineral' }, max: 0.015, within: 'diet' })
+    expect(rows['salt-nacl']).toMatchObject({ of: { by: 'feeds', feedIds: ['nacl'] }, max: 0.005 })
+    expect(byId(ceilingLimits(defaults, { phase: 'finishing' }, [limestone])).minerals?.max).toBe(0.02)
+  })
+
+  it('holds sulphur where a feed has more than the diet may, 0.3 % on grain and 0.4 % else', () => {
+    const distillers = feed('d', { values: { sulfur: { value: 9 } } })
+    expect(byId(ceilingLimits(defaults, ewes, [distillers])).sulfur).toMatchObject({ max: 4 })
+    expect(byId(ceilingLimits(defaults, { phase: 'finishing' }, [distillers])).sulfur).toMatchObject({
+      max: 3,
+    })
+    expect(ceilingLimits(defaults, ewes, [feed('b', { values: { sulfur: { value: 2 } } })])).toEqual([])
+  })
+
+  it('stands behind the first rows, only for feeds of the mix', () => {
+    const limits = firstMixLimits(defaults, ewes, requirement, {
+      basis: 'perHead',
+      feeds: [hulls, limestone],
+    })
+    expect(checked(limits).minerals).toMatchObject({ max: 0.015 })
+    expect(limits.slice(-2).map(({ id }) => id)).toEqual(['minerals', 'byProducts-hulls'])
   })
 })
 

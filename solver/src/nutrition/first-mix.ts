@@ -15,7 +15,8 @@ export interface FirstMixFeed {
   class: FeedClass
   /** kg dry matter per kg as fed. */
   dryMatter: number
-  values: Partial<Record<NutrientId, unknown>>
+  /** Known values per kg of dry matter, in the nutrient's unit. */
+  values: Partial<Record<NutrientId, { value: number }>>
 }
 
 export interface FirstMixOptions {
@@ -33,8 +34,8 @@ const origin = (figure: DefaultFigure): Origin => ({ source: figure.source, stat
 
 /**
  * The limits of a first mix: ME, crude protein, calcium, phosphorus, Ca:P, share of forage, starch (or NFC), fat, and
- * intake as a window; the loose mineral of the species at its rate where it is among the feeds. A need that the requirement
- * does not name gives no row. Needs are amounts per head and day, for a batch they are put as concentrations at the
+ * intake as a window; the loose mineral of the species at its rate and ceilings for minerals, salt, by-products and molasses
+ * where such feeds are among the feeds. A need that the requirement does not name gives no row. Needs are amounts per head and day, for a batch they are put as concentrations at the
  * expected intake.
  */
 export function firstMixLimits(
@@ -139,9 +140,9 @@ export function firstMixLimits(
 
   const window = batch ? undefined : intakeWindow(defaults, requirement, options)
   if (window) limits.push(window)
-  const mineral = mineralLimit(defaults, group.species, feeds, batch ? intake : undefined)
+  const mineral = mineralLimit(defaults, group.species, feeds, intake, batch)
   if (mineral) limits.push(mineral)
-  return limits
+  return [...limits, ...ceilingLimits(defaults, group, feeds)]
 }
 
 /** The table's crude protein, or the floor of the species where that is more; g per head and day. */
@@ -193,41 +194,56 @@ function intakeWindow(
   }
 }
 
-/** The loose mineral of the species at its rate, exactly: kg as fed per head and day, or its share of a batch. */
+/**
+ * The loose mineral of the species at its rate, exactly: kg as fed per head and day, or its share of a batch. A small animal
+ * gets less, by what it eats: the rate of a grown one would bring it too much selenium and, for goats, copper.
+ */
 function mineralLimit(
   defaults: FirstMixDefaults,
   species: Species,
   feeds: readonly FirstMixFeed[],
-  batchIntakeKg: number | undefined,
+  intakeKg: number,
+  batch: boolean,
 ): Limit | undefined {
   const rate = defaults.mineral[species]
   const feed = rate && feeds.find((entry) => entry.bookKey === rate.feedKey)
   if (!rate || !feed) return undefined
-  const value = batchIntakeKg === undefined ? rate.value : (rate.value * feed.dryMatter) / batchIntakeKg
+  const { maxShareOfIntake: most } = defaults.mineral
+  const share = (rate.value * feed.dryMatter) / intakeKg
+  const small = share > most.value
+  const value = batch
+    ? Math.min(share, most.value)
+    : small
+      ? (most.value * intakeKg) / feed.dryMatter
+      : rate.value
   return {
     ...common,
     id: 'mineral',
     kind: 'feeds',
     of: { by: 'feeds', feedIds: [feed.id] },
-    measure: batchIntakeKg === undefined ? 'kgAsFed' : 'shareOfDryMatter',
+    measure: batch ? 'shareOfDryMatter' : 'kgAsFed',
     within: 'mix',
     min: value,
     max: value,
-    ...origin(rate),
+    ...origin(small ? most : rate),
   }
 }
 
 /**
- * Limits that are offered beside the first ones, not set: a ceiling for each by-product and for molasses, and sulphur.
- * Only ceilings of classes that occur among the feeds are offered.
+ * Ceilings that keep a cheap feed from filling a mix: minerals together, salt, each by-product, molasses; and sulphur where
+ * a feed holds more of it than the whole diet may. Only what occurs among the feeds gets a row. Shares are of the whole
+ * diet's dry matter or of the mix as fed, as the defaults say.
  */
-export function offeredLimits(
+export function ceilingLimits(
   defaults: FirstMixDefaults,
-  group: FirstMixGroup,
+  group: Pick<FirstMixGroup, 'phase'>,
   feeds: readonly FirstMixFeed[],
 ): Limit[] {
   const ceilings = defaults.ceilings.flatMap((ceiling): Limit[] => {
-    const fitting = feeds.filter((feed) => feed.class === ceiling.feedClass)
+    if (ceiling.phases && !ceiling.phases.includes(group.phase)) return []
+    const fitting = feeds.filter((feed) =>
+      ceiling.bookKey === undefined ? feed.class === ceiling.feedClass : feed.bookKey === ceiling.bookKey,
+    )
     const rest = { ...common, kind: 'feeds', measure: ceiling.measure, within: ceiling.within } as const
     if (!fitting.length) return []
     if (!ceiling.each) {
@@ -243,5 +259,6 @@ export function offeredLimits(
     }))
   })
   const sulphur = defaults.sulphurMax[group.phase === 'finishing' ? 'grainDiet' : 'forageDiet']
-  return [...ceilings, concentrationMax('sulfur', 'sulfur', sulphur)]
+  const rich = feeds.some(({ values }) => (values.sulfur?.value ?? 0) > sulphur.value)
+  return rich ? [...ceilings, concentrationMax('sulfur', 'sulfur', sulphur)] : ceilings
 }

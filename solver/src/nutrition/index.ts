@@ -6,7 +6,7 @@ export type { Ceiling, DefaultFigure, FirstMixDefaults, Phase, SuggestedFeeds } 
 export { withDerivedNutrients } from './derived'
 export type { KnownValue, KnownValues } from './derived'
 export * from './energy'
-export { firstMixLimits, offeredLimits } from './first-mix'
+export { ceilingLimits, firstMixLimits } from './first-mix'
 export type { FirstMixFeed, FirstMixGroup, FirstMixOptions } from './first-mix'
 export { defaultSubstitution, fibreCapIntake } from './forage'
 export * from './goats'
