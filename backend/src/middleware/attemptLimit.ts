@@ -11,6 +11,8 @@ export function attemptLimit(attempts: number): RequestHandler {
     limit: attempts,
     standardHeaders: 'draft-7',
     legacyHeaders: false,
+    // Without a proxy of ours in front, that header is anybody's to write and is not looked at.
+    validate: { xForwardedForHeader: false },
     handler: (_request, response, next) => {
       response.setHeader('Retry-After', String(windowMs / 1000))
       next(new AppError('too_many_requests'))
