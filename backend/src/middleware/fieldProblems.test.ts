@@ -22,7 +22,7 @@ describe('what is wrong with input', () => {
     day: z.iso.date(),
     list: z
       .array(z.strictObject({ id: z.uuid() }))
-      .max(2)
+      .max(3)
       .optional(),
   })
 
