@@ -75,7 +75,7 @@ export function readQuantity(text: string, context: QuantityContext): QuantityRe
   return reading
 }
 
-/** Writes a stored figure as it stands in a field, in the field's unit, with at most four significant decimals. */
+/** Writes a stored figure as it stands in a field, in the field's unit, converted ones to four digits. */
 export function writeQuantity(value: number | undefined, context: QuantityContext): string {
   if (value === undefined) return ''
   const shown =
@@ -86,5 +86,6 @@ export function writeQuantity(value: number | undefined, context: QuantityContex
         : context.kind === 'percent'
           ? value * 100
           : value
-  return String(Number(shown.toPrecision(6)))
+  const converted = context.units === 'us' && (context.kind === 'weight' || context.kind === 'grams')
+  return String(Number(shown.toPrecision(converted ? 4 : 6)))
 }

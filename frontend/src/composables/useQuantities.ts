@@ -116,8 +116,9 @@ export function useQuantities() {
   }
 
   function storedConcentration(id: NutrientId, shown: number): number {
-    if (nutrient(id).percent) return shown * 10
-    return isPerPound(id) ? shown / KG_PER_POUND : shown
+    const stored = nutrient(id).percent ? shown * 10 : isPerPound(id) ? shown / KG_PER_POUND : shown
+    // 1.11 % is 11.1 g/kg, not 11.100000000000001.
+    return Number(stored.toPrecision(12))
   }
 
   /** The figure alone, for a column whose head names the unit and basis. */
