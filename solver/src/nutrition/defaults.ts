@@ -51,6 +51,8 @@ export interface FirstMixDefaults {
   fatMax: DefaultFigure
   sulphurMax: { forageDiet: DefaultFigure; grainDiet: DefaultFigure }
   intakeMinShareOfTable: DefaultFigure
+  /** What is eaten with a supplement, as a multiple of a base diet that fills the animal beyond the table's intake. */
+  intakeOverForage: DefaultFigure
   concentrateAtOneFeeding: { maxKg: DefaultFigure; maxShareOfBodyWeight: DefaultFigure }
   substitution: {
     byPhase: Partial<Record<Phase, DefaultFigure>>

@@ -127,12 +127,13 @@ describe('firstMixLimits', () => {
     expect(rows.calciumToPhosphorus).toBeDefined()
   })
 
-  it('caps the intake beside hay only where hay alone leaves room', () => {
+  it('caps the intake beside hay at the table, or a fifth above hay that fills the animal by itself', () => {
     const beside = (baseIntakeKg: number) =>
       byId(firstMixLimits(defaults, ewes, requirement, { basis: 'besideForage', baseIntakeKg })).intake
     expect(beside(1.4)).toMatchObject({ max: 2 })
     expect(beside(1.4)?.min).toBeUndefined()
-    expect(beside(2.1)).toBeUndefined()
+    expect(beside(2.1)).toMatchObject({ max: 2.1 * 1.2, status: 'practice' })
+    expect(beside(2.1)?.min).toBeUndefined()
   })
 
   it('fixes the loose mineral of the species at its rate', () => {

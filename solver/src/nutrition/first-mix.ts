@@ -138,8 +138,7 @@ export function firstMixLimits(
     concentrationMax('fat', 'crudeFat', defaults.fatMax),
   )
 
-  const window = batch ? undefined : intakeWindow(defaults, requirement, options)
-  if (window) limits.push(window)
+  if (!batch) limits.push(intakeWindow(defaults, requirement, options))
   const mineral = mineralLimit(defaults, group.species, feeds, intake, batch)
   if (mineral) limits.push(mineral)
   return [...limits, ...ceilingLimits(defaults, group, feeds)]
@@ -171,18 +170,16 @@ function concentrationMax(id: string, nutrient: NutrientId, figure: DefaultFigur
 }
 
 /**
- * What the animal eats in all. Beside hay or pasture there is no lower end, and where the forage alone fills it beyond the
- * table's intake no row at all: the substitution rate then says what is eaten.
+ * What the animal eats in all. Beside hay or pasture there is no lower end; where the forage alone fills it beyond the
+ * table's intake, it eats at most a fifth more with a supplement, which gives way to forage only in part.
  */
-function intakeWindow(
-  defaults: FirstMixDefaults,
-  requirement: Requirement,
-  options: FirstMixOptions,
-): Limit | undefined {
+function intakeWindow(defaults: FirstMixDefaults, requirement: Requirement, options: FirstMixOptions): Limit {
   const most = requirement.intakeDryMatterKg
   const window = { ...common, id: 'intake', kind: 'intake' as const, max: most }
   if (options.basis === 'besideForage') {
-    if (options.baseIntakeKg !== undefined && options.baseIntakeKg >= most) return undefined
+    const { baseIntakeKg = 0 } = options
+    const over = defaults.intakeOverForage
+    if (baseIntakeKg >= most) return { ...window, max: baseIntakeKg * over.value, ...origin(over) }
     return { ...window, source: requirement.source, status: requirement.status }
   }
   const least = defaults.intakeMinShareOfTable
