@@ -136,6 +136,7 @@ function launch(directory, data, settings, forTests) {
   const flags = [
     '--no-defaults',
     `--datadir=${data}`,
+    `--tmpdir=${ownTemporaryDirectory(directory)}`,
     `--user=${userInfo().username}`,
     `--socket=${join(socketDirectory, socketName)}`,
     `--pid-file=${join(directory, 'mariadb.pid')}`,
@@ -228,7 +229,11 @@ async function createData(data) {
       '--skip-test-db',
       '--skip-name-resolve',
     ],
-    { quiet: true, cwd: dirname(data) },
+    {
+      quiet: true,
+      cwd: dirname(data),
+      env: { ...process.env, TMPDIR: ownTemporaryDirectory(dirname(data)) },
+    },
   )
   if (code !== 0) throw new SetupError(`The database could not be created in ${data}:\n${output.trim()}`)
   renameSync(unfinished, data)
@@ -287,6 +292,17 @@ const socketName = 'mariadb.sock'
 function socketDirectoryFor(directory) {
   const fits = Buffer.byteLength(join(directory, socketName)) <= longestSocketPath
   return fits ? directory : mkdtempSync(join(tmpdir(), 'maslin-socket-'))
+}
+
+/**
+ * Where a server keeps its temporary tables. In a shared directory it would remove those of every other server when
+ * it starts.
+ * @param {string} directory
+ */
+function ownTemporaryDirectory(directory) {
+  const own = join(directory, 'tmp')
+  mkdirSync(own, { recursive: true, mode: 0o700 })
+  return own
 }
 
 /** @param {string} command */
