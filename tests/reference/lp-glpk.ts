@@ -1,5 +1,6 @@
 import { execFile } from 'node:child_process'
-import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises'
+import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
+import { readFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { promisify } from 'node:util'
@@ -38,42 +39,72 @@ export interface GlpkProblem {
   constant: number
 }
 
-async function inFolder<Result>(use: (folder: string) => Promise<Result>): Promise<Result> {
-  const folder = await mkdtemp(path.join(tmpdir(), 'glpk-'))
-  try {
-    return await use(folder)
-  } finally {
-    await rm(folder, { recursive: true, force: true })
+let folder: string | undefined
+let files = 0
+
+/** A fresh file name in a folder of this process, which goes when the process does. */
+function scratch(): string {
+  if (!folder) {
+    folder = mkdtempSync(path.join(tmpdir(), 'glpk-'))
+    const made = folder
+    process.once('exit', () => rmSync(made, { recursive: true, force: true }))
   }
+  return path.join(folder, `${files++}`)
 }
 
 /** Lets glpsol read a problem file (`['-m', file]` or `['--mps', file]`) and returns what it read. */
-export function readProblem(args: string[]): Promise<GlpkProblem> {
-  return inFolder(async (folder) => {
-    const file = path.join(folder, 'problem.glp')
-    await run('glpsol', [...args, '--check', '--wglp', file])
-    return parseProblem(await readFile(file, 'utf8'))
-  })
+export async function readProblem(args: string[]): Promise<GlpkProblem> {
+  const file = scratch()
+  await run('glpsol', [...args, '--check', '--wglp', file])
+  return parseProblem(await readFile(file, 'utf8'))
 }
 
 /** Solves what glpsol reads itself from a problem file. */
-export function solveFile(args: string[]): Promise<GlpkSolution> {
-  return inFolder(async (folder) => {
-    const file = path.join(folder, 'solution.txt')
-    await run('glpsol', [...args, '--nopresol', '-w', file])
-    return parseSolution(await readFile(file, 'utf8'))
+export async function solveFile(args: string[]): Promise<GlpkSolution> {
+  const file = scratch()
+  await run('glpsol', [...args, '--nopresol', '-w', file])
+  return parseSolution(await readFile(file, 'utf8'))
+}
+
+interface Asked {
+  file: string
+  resolve: (solution: GlpkSolution) => void
+  reject: (error: unknown) => void
+}
+
+const asked: Asked[] = []
+let running = false
+
+/**
+ * Solves a program of ours with glpsol (presolve off, so that it says which of infeasible and unbounded). Programs
+ * asked for while others are being solved go together in one run of the shell: starting a process from Node costs
+ * more than solving a mix.
+ */
+export async function solveWithGlpsol(lp: LinearProgram): Promise<GlpkSolution> {
+  const file = scratch()
+  writeFileSync(file, formatProblem(lp))
+  return new Promise((resolve, reject) => {
+    asked.push({ file, resolve, reject })
+    if (!running) {
+      running = true
+      setImmediate(() => void solveAsked())
+    }
   })
 }
 
-/** Solves a program of ours with glpsol (presolve off, so that it says which of infeasible and unbounded). */
-export function solveWithGlpsol(lp: LinearProgram): Promise<GlpkSolution> {
-  return inFolder(async (folder) => {
-    const file = path.join(folder, 'problem.glp')
-    await writeFile(file, formatProblem(lp))
-    const solution = path.join(folder, 'solution.txt')
-    await run('glpsol', ['--glp', file, '--nopresol', '-w', solution])
-    return parseSolution(await readFile(solution, 'utf8'))
-  })
+const EACH = 'for file; do glpsol --glp "$file" --nopresol -w "$file.solution" > "$file.log" || exit 1; done'
+
+async function solveAsked(): Promise<void> {
+  while (asked.length > 0) {
+    const batch = asked.splice(0, 500)
+    try {
+      await run('sh', ['-c', EACH, 'sh', ...batch.map(({ file }) => file)])
+      for (const { file, resolve } of batch) resolve(parseSolution(readFileSync(`${file}.solution`, 'utf8')))
+    } catch (error) {
+      for (const { reject } of batch) reject(error)
+    }
+  }
+  running = false
 }
 
 function bounds(lower: number, upper: number): string {

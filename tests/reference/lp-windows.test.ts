@@ -22,6 +22,12 @@ const STEP = 0.02
 
 beforeAll(requireGlpsol)
 
+/** Runs checks side by side: each waits for GLPK most of its time. */
+const each = async <Item>(items: Item[], check: (item: Item) => Promise<void>): Promise<void> => {
+  await Promise.all(items.map(check))
+}
+const seeds = Array.from({ length: SEEDS }, (_, k) => k + 1)
+
 async function optimum(lp: LinearProgram): Promise<OptimalOutcome> {
   const outcome = await solveLinearProgram(lp)
   if (outcome.status !== 'optimal') throw new Error(outcome.status)
@@ -42,11 +48,11 @@ async function leastCost(lp: LinearProgram): Promise<number> {
 describe.each(FAMILIES.filter((family) => family !== 'infeasible'))('mixes of the family "%s"', (family) => {
   it('keep their amounts inside each cost window and change them beyond', async () => {
     let ends = 0
-    for (let seed = 1; seed <= SEEDS; seed++) {
+    await each(seeds, async (seed) => {
       const lp = randomMix(seed, family)
       const outcome = await optimum(lp)
       const amount = new Map(lp.columns.map(({ id }, j) => [id, outcome.columns[j]!.value]))
-      for (const { column, cost, lower, upper } of await costWindows(lp, outcome)) {
+      await each(await costWindows(lp, outcome), async ({ column, cost, lower, upper }) => {
         expect(lower).toBeLessThanOrEqual(cost)
         expect(upper).toBeGreaterThanOrEqual(cost)
         for (const [end, direction] of [
@@ -67,44 +73,47 @@ describe.each(FAMILIES.filter((family) => family !== 'infeasible'))('mixes of th
           expect(await leastCost(withCost(lp, column, beyond)), name).toBeLessThan(unchanged(beyond))
           ends++
         }
-      }
-    }
+      })
+    })
     expect(ends).toBeGreaterThan(SEEDS)
   })
 
   it('take in an unused feed below its buy-in cost and not above, as much as is said', async () => {
     let entered = 0
-    for (let seed = 1; seed <= SEEDS; seed++) {
+    await each(seeds, async (seed) => {
       const lp = randomMix(seed, family)
       const outcome = await optimum(lp)
       const noise = RELATIVE * Math.abs(outcome.objective)
-      for (const { column, entersBelow, amount } of await buyInCosts(lp, outcome, { amounts: true })) {
-        const name = `${family} ${seed}, ${column}`
-        if (entersBelow === null) {
-          expect(
-            Math.abs((await leastCost(withCost(lp, column, -1e3))) - outcome.objective),
-            name,
-          ).toBeLessThan(noise)
-          continue
-        }
-        const above = await leastCost(withCost(lp, column, entersBelow + STEP / 100))
-        expect(Math.abs(above - outcome.objective), name).toBeLessThan(noise)
-        // Just past the threshold the whole stated amount comes in: it saves that amount times the difference.
-        const below = await leastCost(withCost(lp, column, entersBelow - STEP))
-        expect(below, name).toBeLessThanOrEqual(outcome.objective - STEP * amount! + noise)
-        const slight = await leastCost(withCost(lp, column, entersBelow - STEP / 1e4))
-        expect(Math.abs(slight - (outcome.objective - (STEP / 1e4) * amount!)), name).toBeLessThan(
-          noise + 1e-3 * (STEP / 1e4) * amount!,
-        )
-        entered++
-      }
-    }
+      await each(
+        await buyInCosts(lp, outcome, { amounts: true }),
+        async ({ column, entersBelow, amount }) => {
+          const name = `${family} ${seed}, ${column}`
+          if (entersBelow === null) {
+            expect(
+              Math.abs((await leastCost(withCost(lp, column, -1e3))) - outcome.objective),
+              name,
+            ).toBeLessThan(noise)
+            return
+          }
+          const above = await leastCost(withCost(lp, column, entersBelow + STEP / 100))
+          expect(Math.abs(above - outcome.objective), name).toBeLessThan(noise)
+          // Just past the threshold the whole stated amount comes in: it saves that amount times the difference.
+          const below = await leastCost(withCost(lp, column, entersBelow - STEP))
+          expect(below, name).toBeLessThanOrEqual(outcome.objective - STEP * amount! + noise)
+          const slight = await leastCost(withCost(lp, column, entersBelow - STEP / 1e4))
+          expect(Math.abs(slight - (outcome.objective - (STEP / 1e4) * amount!)), name).toBeLessThan(
+            noise + 1e-3 * (STEP / 1e4) * amount!,
+          )
+          entered++
+        },
+      )
+    })
     expect(entered).toBeGreaterThan(10 * SEEDS)
   })
 
   it('cost along a curve what GLPK finds between its corners', async () => {
     let checked = 0
-    for (let seed = 1; seed <= SEEDS; seed++) {
+    await each(seeds, async (seed) => {
       const lp = randomMix(seed, family)
       const outcome = await optimum(lp)
       const used = outcome.columns.findIndex(({ value }) => value > 0)
@@ -122,7 +131,7 @@ describe.each(FAMILIES.filter((family) => family !== 'infeasible'))('mixes of th
         const { points, feasible, complete } = await costCurve(lp, task)
         expect(complete).toBe(true)
         const { from, to } = feasible!
-        for (let k = 0; k < 6 && to > from; k++) {
+        await each(to > from ? [0, 1, 2, 3, 4, 5] : [], async (k) => {
           const at = from + ((to - from) * (k + 0.5)) / 6
           const after = points.findIndex((point) => point.at >= at)
           const [left, right] = [points[after - 1]!, points[after]!]
@@ -145,9 +154,9 @@ describe.each(FAMILIES.filter((family) => family !== 'infeasible'))('mixes of th
             `${family} ${seed} ${task.along.kind} at ${at}`,
           ).toBeLessThanOrEqual(1e-7 * Math.abs(found))
           checked++
-        }
+        })
       }
-    }
+    })
     expect(checked).toBeGreaterThan(6 * SEEDS)
   })
 })
