@@ -97,6 +97,7 @@ export default {
   leftOut: {
     price: '{name} is worth buying below {below}; now {now}.',
     priceThen: '{name} is worth buying below {below}, then {share} of the mix; now {now}.',
+    priceTrace: '{name} is worth buying below {below}, then in traces; now {now}.',
     never: '{name} comes in at no price, as the limits stand; now {now}.',
     noPrice: '{name} has no price on this day, so it stays out.',
     ruminantOrigin:
@@ -147,6 +148,7 @@ export default {
       min: '{name}: at least {to} {basis} instead of {from}',
       max: '{name}: at most {to} {basis} instead of {from}',
     },
+    seeProposals: 'See what would make one possible',
     proposals: 'What would make a mix possible, least change first:',
     apply: 'Change it',
     then: 'then {cost} a head and day',
@@ -193,6 +195,7 @@ export default {
     askReview: 'Ask for review',
     tryOnly: 'You may try values here. Saving is for an owner or a manager.',
     readOnly: 'You can read this mix. Trying and saving values is for others on the farm.',
+    toScenario: 'See its last scenario, {name}, with the answer.',
     leaveTitle: 'Leave without saving?',
     leaveText: 'Your changes to this mix are not saved. If you leave now they are lost.',
     leave: 'Leave without saving',
@@ -324,6 +327,7 @@ export default {
   },
   limits: {
     title: 'Limits that cost',
+    titleAll: 'Limits',
     hint: 'dearest first; money is for the whole group and 30 days',
     hintBatch: 'dearest first; money is for the whole group and 30 days',
     noneCost: 'No limit costs anything: the cheapest feeds meet them all.',

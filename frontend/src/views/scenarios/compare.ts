@@ -1,5 +1,4 @@
 import type { Limit, OptimalAnswer, Revision, SolverFeed } from '@maslin/shared'
-import { groupPeriodFactor } from '../mixes/model/margins'
 import { boundsText, limitName, measureOf, type FeedName } from '../mixes/model/measures'
 import { packageOf, priceText } from '../mixes/model/prices'
 import type { Words } from '../mixes/model/words'
@@ -123,18 +122,14 @@ function limitLines(left: Revision, right: Revision, nameOf: FeedName, words: Wo
     const bounds = boundsText(limit, measureOf(limit, revision.draft.basis, words), words)
     return limit.enabled ? bounds : words.t('scenarios.compare.off', { bounds })
   }
-  const period = (revision: Revision, limit: Limit | undefined) => {
-    const answer = optimal(revision)
-    const result = answer?.limits.find((one) => one.limitId === limit?.id)
-    if (!answer || !result || result.state !== 'costs') return false
-    return groupPeriodFactor(answer, revision.input) > 0
-  }
+  const costs = (revision: Revision, limit: Limit | undefined) =>
+    optimal(revision)?.limits.find((one) => one.limitId === limit?.id)?.state === 'costs'
   return [...new Set([...before.keys(), ...after.keys()])].map((key) => {
     const [a, b] = [before.get(key), after.get(key)]
     const shown = { left: text(a, left), right: text(b, right) }
-    const [boundBefore, boundAfter] = [period(left, a), period(right, b)]
+    const [costBefore, costsNow] = [costs(left, a), costs(right, b)]
     const change =
-      boundBefore === boundAfter ? '' : words.t(`scenarios.compare.${boundAfter ? 'nowCosts' : 'nowFree'}`)
+      costBefore === costsNow ? '' : words.t(`scenarios.compare.${costsNow ? 'nowCosts' : 'nowFree'}`)
     const limit = b ?? a
     return {
       id: key,

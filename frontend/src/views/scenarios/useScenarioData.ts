@@ -4,7 +4,7 @@ import { fetchRevision, fetchScenario, fetchScenarios } from '../../api/scenario
 import { useFarm } from '../../composables/useFarm'
 import { farmKey } from '../../queries'
 
-/** The farm's scenarios as queries. A stored revision never changes, so it is fetched once. */
+/** The farm's scenarios as queries. What a stored revision holds never changes; its state does. */
 export function useScenarioData() {
   const { farmId } = useFarm()
   const client = useQueryClient()
@@ -29,6 +29,7 @@ export function useScenarioData() {
       }),
     changed: async () => {
       await client.invalidateQueries({ queryKey: farmKey(farmId.value, 'scenarios') })
+      await client.invalidateQueries({ queryKey: farmKey(farmId.value, 'revisions') })
       await client.invalidateQueries({ queryKey: ['reviews'] })
     },
   }

@@ -41,5 +41,8 @@ export function leftOutSentence(
   if (out.buyInPrice === undefined) return rich(words, 'mixes.leftOut.never', { name, now })
   const parts = { name, below: strong(priceText(out.buyInPrice, size, words)), now }
   if (out.thenShareAsFed === undefined) return rich(words, 'mixes.leftOut.price', parts)
-  return rich(words, 'mixes.leftOut.priceThen', { ...parts, share: words.q.percent(out.thenShareAsFed, 0) })
+  const share = words.q.percent(out.thenShareAsFed, out.thenShareAsFed < 0.01 ? 1 : 0)
+  // A feed that comes in by traces only is not worth a figure that reads as nothing.
+  if (out.thenShareAsFed < 0.0005) return rich(words, 'mixes.leftOut.priceTrace', parts)
+  return rich(words, 'mixes.leftOut.priceThen', { ...parts, share })
 }
