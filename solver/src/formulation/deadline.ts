@@ -15,12 +15,15 @@ export class OutOfTime extends Error {
   }
 }
 
+/** Below this share of its time a call leaves out what its answer can do without. */
+const SHORT = 0.3
+
 /** The end of a call, handed from solve to solve. */
 export class Deadline {
   /** As a time of `performance.now()`. */
   readonly until: number
 
-  constructor(milliseconds: number) {
+  constructor(private readonly milliseconds: number) {
     this.until = performance.now() + milliseconds
   }
 
@@ -29,6 +32,11 @@ export class Deadline {
     const left = this.until - performance.now()
     if (left <= 0) throw new OutOfTime()
     return left
+  }
+
+  /** Whether most of the time is gone, so that only what matters most should still be begun. */
+  isShort(): boolean {
+    return this.until - performance.now() < SHORT * this.milliseconds
   }
 }
 

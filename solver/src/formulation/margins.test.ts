@@ -184,6 +184,26 @@ describe('a limit that differs for more and less', () => {
     expect(answer.limits[0]!.lower!.perUnit).toBeCloseTo((-1000 * (0.4 - 0.2)) / 0.9 / 200, 9)
   })
 
+  it('counts what raising a minimum of nothing costs', async () => {
+    const answer = await mixed(
+      mix('batch')
+        .with(grain, meal)
+        .limit({
+          id: 'meal',
+          kind: 'feeds',
+          of: { by: 'feeds', feedIds: [meal.id] },
+          measure: 'shareOfDryMatter',
+          min: 0,
+        }),
+    )
+    expect(answer.limits[0]).toMatchObject({
+      value: 0,
+      state: 'costs',
+      raise: { perUnit: expect.closeTo((1000 * (0.4 - 0.2)) / 0.9, 9), until: expect.closeTo(1, 6) },
+      lower: { perUnit: 0, until: 0 },
+    })
+  })
+
   it('moves both ends of a fixed amount together', async () => {
     const answer = await mixed(
       mix('batch')

@@ -63,7 +63,9 @@ export async function leftOutByPrice(context: PriceContext, blend: BlendPart[]):
       const entry: LeftOut = { feedId: column, reason: 'price', pricePerKg: cost }
       if (entersBelow !== null && entersBelow > 0) {
         entry.buyInPrice = Math.min(entersBelow, cost)
-        Object.assign(entry, enteringAt(context, warm, position.get(column)!, entry.buyInPrice))
+        // What a feed would do is left out where time is short: at which price it comes in is known already.
+        if (!deadline.isShort())
+          Object.assign(entry, enteringAt(context, warm, position.get(column)!, entry.buyInPrice))
       }
       leftOut.push(entry)
     }

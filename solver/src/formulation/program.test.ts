@@ -143,6 +143,21 @@ describe('rows', () => {
     expect(sides.map(({ rowSide }) => rowSide)).toEqual(['equal', 'equal'])
   })
 
+  it('does not count a feed that lies on the limit by itself, where rounding would leave something of it', () => {
+    const [low, high] = [0.1 + 0.2, 0.3]
+    const feeds = [
+      feed('even', 0.7, 0.2, { calcium: low, phosphorus: 1 }),
+      feed('rich', 0.9, 0.3, { calcium: 5, phosphorus: 1 }),
+    ]
+    const { program } = formulated(
+      mix('batch')
+        .with(...feeds)
+        .limit({ id: 'ratio', kind: 'ratio', numerator: 'calcium', denominator: 'phosphorus', min: high }),
+    )
+    expect(low).not.toBe(high)
+    expect(program.rows[1]!.entries.map(([column]) => column)).toEqual([1])
+  })
+
   it('leaves out limits that are switched off', () => {
     const off = {
       id: 'cp',

@@ -1,6 +1,7 @@
 import type { InfeasibleAnswer, Loosening } from '@maslin/shared'
-import { smallestLoosening } from '../analysis'
+import { AnalysisStopped, smallestLoosening } from '../analysis'
 import type { LinearProgram } from '../lp'
+import { OutOfTime } from './deadline'
 import { REFERENCE_DRY_MATTER_KG } from './diet'
 import { constantForm, valueOf } from './forms'
 import { batchScale, type BoundSide } from './measures'
@@ -16,6 +17,8 @@ const MOST_SINGLE = 6
 const ROUNDS = 3
 /** Rounds in which one such limit is drawn in; the iteration is quadratic and needs three or four. */
 const MOST_ROUNDS = 20
+/** One proposal may not take the time of the others: its elastic program is given up after so many milliseconds. */
+const LONGEST_MS = 1500
 /** Figures of a proposal, so that a person can read it; rounded to the safe side. */
 const FIGURES = 4
 /** Part of the last figure that is rounding of the solver; the rounded proposal is solved again in any case. */
@@ -30,7 +33,10 @@ interface Loosened {
   to: number
 }
 
-/** First the least loosening in all, then other limits to loosen instead; each solved again and found possible. */
+/**
+ * First the least loosening in all, then other limits to loosen instead; each solved again and found possible. The
+ * others are left out where time is short or their programs cannot be solved: the conflict is the answer, they are help.
+ */
 export async function proposalsFor(
   context: SolveContext,
   split: Formulation,
@@ -41,7 +47,11 @@ export async function proposalsFor(
   const found: Ranked[] = []
   const seen = new Set<string>()
   const consider = async (allowed: LimitSide[]): Promise<void> => {
-    const proposal = allowed.length > 0 ? await propose(context, split, allowed) : undefined
+    if (allowed.length === 0 || context.deadline.isShort()) return
+    const proposal = await propose(context, split, allowed).catch((error: unknown) => {
+      if (error instanceof AnalysisStopped || error instanceof OutOfTime) return undefined
+      throw error
+    })
     if (!proposal) return
     const key = proposal.loosenings
       .map(({ limitId, side }) => `${side}:${limitId}`)
@@ -76,14 +86,14 @@ async function propose(
   let amounts = evenMix(split)
   let best: { sides: Loosened[]; size: number } | undefined
   const rounds = allowed.every((side) => side.movesSide) ? 1 : ROUNDS
-  for (let round = 0; round < rounds; round++) {
+  for (let round = 0; round < rounds && !(best && context.deadline.isShort()); round++) {
     const loosening = await smallestLoosening(split.program, {
       rows: allowed.map((side) => ({
         row: side.rowId,
         side: side.side === 'min' ? 'lower' : 'upper',
         weight: 1 / (Math.max(valueOf(side.denominator, amounts), 1e-9) * sizeOf(split, side)),
       })),
-      deadlineMs: context.deadline.left(),
+      deadlineMs: Math.min(context.deadline.left(), LONGEST_MS),
     })
     if (!loosening.possible) return undefined
     amounts = loosening.amounts
@@ -115,7 +125,11 @@ async function propose(
  * L · denominator, set L to the quotient found, until it stays). Source: W. Dinkelbach, On Nonlinear Fractional
  * Programming, Management Science 13 (1967), from memory.
  */
-async function drawIn({ solve }: SolveContext, split: Formulation, loosened: Loosened[]): Promise<void> {
+async function drawIn(
+  { solve, deadline }: SolveContext,
+  split: Formulation,
+  loosened: Loosened[],
+): Promise<void> {
   for (const entry of loosened) {
     const { side } = entry
     if (side.movesSide) continue
@@ -125,7 +139,7 @@ async function drawIn({ solve }: SolveContext, split: Formulation, loosened: Loo
       i === side.row ? { ...row, lower: -Infinity, upper: Infinity } : row,
     )
     const sign = side.side === 'min' ? -1 : 1
-    for (let round = 0; round < MOST_ROUNDS; round++) {
+    for (let round = 0; round < MOST_ROUNDS && !deadline.isShort(); round++) {
       const bound = entry.to
       const columns = program.columns.map((column, j) => ({
         ...column,
