@@ -52,15 +52,15 @@ describe('solving pool under trouble', () => {
   it('ends an endless loop at its deadline and solves the next one', async () => {
     const { error, ms } = await timed(solve('hang', 400))
     expect(error).toMatchObject({ failure: 'deadline' })
-    expect(ms).toBeLessThan(1_500)
+    expect(ms).toBeLessThan(3_000)
     await expect(solve('next')).resolves.toMatchObject({ echo: 'next' })
   })
 
   it('lets one who waits behind an endless loop leave at their own deadline', async () => {
-    const loop = timed(solve('hang', 1_500))
+    const loop = timed(solve('hang', 2_500))
     const { error, ms } = await timed(solve('behind', 200))
     expect(error).toMatchObject({ failure: 'deadline' })
-    expect(ms).toBeLessThan(1_000)
+    expect(ms).toBeLessThan(2_000)
     expect((await loop).error).toMatchObject({ failure: 'deadline' })
   })
 
@@ -71,12 +71,12 @@ describe('solving pool under trouble', () => {
   })
 
   it('refuses at once when the line is full', async () => {
-    const running = timed(solve('wait', 5_000, { ms: 600 }))
+    const running = timed(solve('wait', 10_000, { ms: 1_500 }))
     const waiting = [timed(solve('a')), timed(solve('b'))]
     expect(pool.waiting).toBe(2)
     const { error, ms } = await timed(solve('c'))
     expect(error).toMatchObject({ failure: 'busy' })
-    expect(ms).toBeLessThan(100)
+    expect(ms).toBeLessThan(500)
     expect((await running).error).toBeUndefined()
     for (const one of await Promise.all(waiting)) expect(one.error).toBeUndefined()
     await expect(solve('later')).resolves.toMatchObject({ echo: 'later' })
@@ -118,7 +118,7 @@ describe('solving pool under trouble', () => {
     expect(await loop).toMatchObject({ error: { failure: 'cancelled' } })
     const { value, ms } = await timed(solve('next', 5_000))
     expect(value).toMatchObject({ echo: 'next' })
-    expect(ms).toBeLessThan(3_000)
+    expect(ms).toBeLessThan(4_000)
   })
 
   it('gives the worker a little less than the time that is left', async () => {
