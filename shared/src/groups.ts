@@ -55,6 +55,7 @@ export const requirementNoteCodes = [
   'noRow',
   'tableGain',
   'sumOfRows',
+  'smallestLitter',
 ] as const
 
 export const requirementSchema = z.object({

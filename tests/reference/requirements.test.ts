@@ -83,6 +83,13 @@ describe('NRC 1985 (Sheep), Table 1, at its own weights', () => {
     expect(found.notes).toContainEqual({ code: 'outsideTable', params: { of: 'litter', value: 3 } })
   })
 
+  it('without a litter the smallest stands, and the answer says so', () => {
+    const found = lookUp(ewe('latePregnancy', 70))
+    expect(found.needs).toEqual(lookUp(ewe('latePregnancy', 70, { litter: 1 })).needs)
+    expect(found.notes).toContainEqual({ code: 'smallestLitter', params: {} })
+    expect(lookUp(ewe('latePregnancy', 70, { litter: 1 })).notes).toEqual([])
+  })
+
   it('late lactation shares the rows that the table prints for both', () => {
     expect(lookUp(ewe('lateLactation', 70, { litter: 1 })).needs).toEqual(
       lookUp(ewe('latePregnancy', 70, { litter: 1 })).needs,

@@ -49,7 +49,8 @@ interface Draft extends TableFigures {
  * What the tables ask for an animal, per head and day, in the amount units of the nutrients (g, Mcal, IU).
  *
  * - Linear between the weights of one table; outside it the nearest row stands and a note says so.
- * - The system is the animal's, else the first of the stage; the litter picks the table, without one the smallest.
+ * - The system is the animal's, else the first of the stage; the litter picks the table, without one the smallest,
+ *   and a note says so.
  * - Stages put together from several rows (activity, pregnancy, milk, gain) are summed; ME is calculated from DE or
  *   TDN where a row has no more. Such figures carry the status `derived`.
  *
@@ -79,6 +80,9 @@ export function lookUpRequirement(
   if (chosen.outside && animal.litter !== undefined) {
     draft.outsideTable = true
     draft.notes.push({ code: 'outsideTable', params: { of: 'litter', value: animal.litter } })
+  }
+  if (stage.asks.includes('litter') && animal.litter === undefined) {
+    draft.notes.push({ code: 'smallestLitter', params: {} })
   }
   if (stage.borrowed) draft.notes.push({ code: 'otherStage', params: { table: stage.table } })
   deriveEnergy(draft)

@@ -92,6 +92,8 @@ export default {
       otherStage: 'The tables have no rows for this stage; those of the nearest one are used.',
       noRow: 'The tables hold no row for this animal.',
       tableGain: 'The tables reckon with a gain of {gain} a day.',
+      smallestLitter:
+        'No litter is given: the smallest one is used. Animals with more young need more; have them scanned or enter the litter.',
       sumOfRows: 'Added up from more than one table (maintenance, activity, milk or growth).',
     },
     caution: "A sick, thin or very fat animal is the veterinarian's or nutritionist's case, not the table's.",
