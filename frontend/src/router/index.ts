@@ -6,6 +6,7 @@ import {
   type Router,
 } from 'vue-router'
 import { onSessionEnd } from '../api/client'
+import { useAnnouncer } from '../composables/useAnnouncer'
 import { translate } from '../i18n'
 import { queryClient } from '../queries'
 import { useSessionStore } from '../stores/session'
@@ -77,8 +78,11 @@ export function createAppRouter(): Router {
     scrollBehavior: (_to, _from, saved) => saved ?? { top: 0 },
   })
   router.beforeEach(guard)
-  router.afterEach((to) => {
+  const { announce } = useAnnouncer()
+  router.afterEach((to, from) => {
     document.title = to.meta.title ? `${translate(to.meta.title)} · Maslin` : 'Maslin'
+    // A page that changes without loading says nothing by itself to those who do not see it.
+    if (to.meta.title && from.matched.length && to.name !== from.name) void announce(translate(to.meta.title))
   })
   onSessionEnd(() => {
     const session = useSessionStore()

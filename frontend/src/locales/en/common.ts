@@ -44,6 +44,6 @@ export default {
     current: 'As it stands now',
     yours: 'As you typed it',
     field: 'What',
-    onlyVersion: 'It was saved again with the same figures.',
+    onlyVersion: 'What you changed reads the same in both.',
   },
 } as const
