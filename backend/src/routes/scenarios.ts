@@ -25,6 +25,9 @@ import {
 import { route, type Call } from './route'
 import { solveContextOf } from './solve'
 
+/** Saving solves twice over and keeps the answer for good. */
+const SAVES = 600
+
 const path = '/farms/:farmId/scenarios/:scenarioId'
 const params = z.object({ scenarioId: idSchema })
 type ScenarioParams = z.infer<typeof params>
@@ -44,6 +47,7 @@ export const scenarioRoutes = [
     method: 'post',
     path: '/farms/:farmId/scenarios',
     access: 'scenarios.write',
+    attemptsPerQuarterHour: SAVES,
     body: scenarioCreateSchema,
     answer: scenarioSchema,
     status: 201,
@@ -92,6 +96,7 @@ export const scenarioRoutes = [
     path: `${path}/revisions`,
     params,
     access: 'scenarios.write',
+    attemptsPerQuarterHour: SAVES,
     body: revisionCreateSchema,
     answer: scenarioSchema,
     status: 201,

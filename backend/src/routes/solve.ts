@@ -2,6 +2,9 @@ import { curveRequestSchema, curveSchema, solveRequestSchema, solveResponseSchem
 import { solveDraft, traceDraftCurve, type SolveContext } from '../services/solve'
 import { route, type Call } from './route'
 
+/** More than several people at one address type on their benches: eight a second, all the time. */
+const SOLVES = 7200
+
 /** What a solve may reach on behalf of a call. */
 export const solveContextOf = (call: Call<unknown, unknown, unknown>): SolveContext => ({
   run: call.inFarm,
@@ -15,6 +18,7 @@ export const solveRoutes = [
     method: 'post',
     path: '/farms/:farmId/solve',
     access: 'mixes.solve',
+    attemptsPerQuarterHour: SOLVES,
     body: solveRequestSchema,
     answer: solveResponseSchema,
     handle: (call) => solveDraft(solveContextOf(call), call.body),
@@ -23,6 +27,7 @@ export const solveRoutes = [
     method: 'post',
     path: '/farms/:farmId/solve/curve',
     access: 'mixes.solve',
+    attemptsPerQuarterHour: SOLVES,
     body: curveRequestSchema,
     answer: curveSchema,
     handle: (call) => traceDraftCurve(solveContextOf(call), call.body),
