@@ -98,7 +98,9 @@ describe('firstMixLimits', () => {
     const males: FirstMixGroup = { species: 'sheep', phase: 'finishing', male: true }
     const rows = checked(firstMixLimits(defaults, males, requirement, { basis: 'perHead' }))
     expect(rows.calciumToPhosphorus).toMatchObject({ min: 2, max: 4 })
-    expect(rows.phosphorus).toMatchObject({ min: 4.5, max: 8 })
+    expect(rows.phosphorus).toMatchObject({ min: 4.5, measure: 'perHeadDay' })
+    expect(rows.phosphorus?.max).toBeUndefined()
+    expect(rows.phosphorusMost).toMatchObject({ max: 4, measure: 'perKgDryMatter', status: 'practice' })
     expect(rows.forageShare).toMatchObject({ min: 0.15 })
   })
 
@@ -106,7 +108,7 @@ describe('firstMixLimits', () => {
     const hungry = { ...requirement, intakeDryMatterKg: 1 }
     const males: FirstMixGroup = { species: 'sheep', phase: 'finishing', male: true }
     const rows = checked(firstMixLimits(defaults, males, hungry, { basis: 'perHead' }))
-    expect(rows.phosphorus?.max).toBeUndefined()
+    expect(rows.phosphorusMost).toBeUndefined()
   })
 
   it('raises the protein of goats to the floor, with the floor as its source', () => {

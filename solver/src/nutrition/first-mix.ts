@@ -91,8 +91,6 @@ export function firstMixLimits(
   }
   const phosphorus = need('phosphorus')
   if (phosphorus) {
-    const most = ratio.males.phosphorusMax.value * intake
-    const capped = group.male && most >= phosphorus.perHeadDay
     limits.push({
       ...common,
       id: 'phosphorus',
@@ -100,12 +98,14 @@ export function firstMixLimits(
       nutrient: 'phosphorus',
       measure,
       min: amount(phosphorus.perHeadDay),
-      ...(capped ? { max: amount(most) } : {}),
-      source: capped
-        ? `${phosphorus.source}; ${ratio.males.phosphorusMax.source}`.slice(0, 600)
-        : phosphorus.source,
+      source: phosphorus.source,
       status: phosphorus.status,
     })
+  }
+  // A row of its own: animals that fill themselves with hay eat more phosphorus than the table's intake holds, not richer.
+  const stones = ratio.males.phosphorusMax
+  if (group.male && (phosphorus?.perHeadDay ?? 0) <= stones.value * intake) {
+    limits.push(concentrationMax('phosphorusMost', 'phosphorus', stones))
   }
   limits.push({
     ...common,
