@@ -8,6 +8,7 @@ import {
 } from '@maslin/shared'
 import { randomUUID } from 'node:crypto'
 import { readFileSync } from 'node:fs'
+import { QueryTypes } from 'sequelize'
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
 import { startTestApp, type TestApp } from '../support/app'
 import { farmApi, type FarmApi } from '../support/farmApi'
@@ -137,6 +138,25 @@ describe('a list that comes again', () => {
     const [barley] = await offers()
     const { items } = (await api.get(`/offers/${barley?.id}/prices`)).body as { items: Price[] }
     expect(items.map(({ price, source }) => [price, source])).toEqual([['12.9', 'import']])
+  })
+
+  it('replaces many at once, each with its trace', async () => {
+    const days = Array.from({ length: 700 }, (_, at) =>
+      new Date(Date.UTC(2024, 0, 1 + at)).toISOString().slice(0, 10),
+    )
+    const priced = (price: number) => list(days.map((day) => `Barley grain,Tarn Mill,50 lb,${price},${day}`))
+    await apply(priced(10))
+    expect((await apply(priced(11))).body).toMatchObject({ counts: { changed: 700 } })
+    const [barley] = await offers()
+    const { items } = (await api.get(`/offers/${barley?.id}/prices`)).body as { items: Price[] }
+    expect(items).toHaveLength(700)
+    expect(new Set(items.map(({ price }) => price))).toEqual(new Set(['11']))
+    const [event] = await t.database.sequelize.query<{ replaced: number }>(
+      `SELECT JSON_LENGTH(before_state, '$.replaced') AS replaced FROM audit_events
+        WHERE farm_id = ? AND action = 'import' ORDER BY id DESC LIMIT 1`,
+      { replacements: [api.farmId], type: QueryTypes.SELECT },
+    )
+    expect(event?.replaced).toBe(700)
   })
 
   it('compares the days of one list with each other, in whatever order they stand', async () => {

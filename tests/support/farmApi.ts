@@ -12,6 +12,7 @@ export function farmApi({ visitor }: Pick<Person, 'visitor'>, farmId: string) {
   }
   let count = 0
   const api = {
+    farmId,
     at,
     get: (path: string) => visitor.get(at(path)),
     post: (path: string, body: object) => visitor.post(at(path)).send(body),

@@ -58,6 +58,7 @@ export const answerProblems: ErrorRequestHandler = (thrown: unknown, request, re
 
 const DUPLICATE = 1062
 const STILL_REFERENCED = 1451
+const REFERENCE_GONE = 1452
 const LOCK_WAIT_TIMEOUT = 1205
 const DEADLOCK = 1213
 
@@ -68,6 +69,12 @@ function toAppError(thrown: unknown): AppError {
   const number = databaseErrorNumber(thrown)
   if (thrown instanceof ForeignKeyConstraintError && number === STILL_REFERENCED) {
     return new AppError('in_use', { detail: 'Something else still refers to it.', cause: thrown })
+  }
+  if (number === REFERENCE_GONE) {
+    return new AppError('conflict', {
+      detail: 'What it refers to was removed in the meantime.',
+      cause: thrown,
+    })
   }
   if (thrown instanceof UniqueConstraintError || number === DUPLICATE) {
     return new AppError('conflict', { detail: 'This exists already.', cause: thrown })

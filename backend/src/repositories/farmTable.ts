@@ -95,6 +95,29 @@ export class FarmTable<Row extends FarmRow> {
   }
 
   /**
+   * Writes the given columns of rows that were read, and locked, in this transaction.
+   * @param rows as they are to be; their versions are counted on here
+   */
+  async overwriteMany(
+    rows: readonly Row[],
+    columns: readonly (keyof RowChanges<Row> & string)[],
+  ): Promise<void> {
+    const changed = rows.map((row) => ({
+      ...row,
+      farmId: this.farmId,
+      version: row.version + 1,
+      updatedAt: this.now,
+    }))
+    for (let start = 0; start < changed.length; start += insertChunk) {
+      const chunk = changed.slice(start, start + insertChunk) as unknown as Creation<Row>[]
+      await this.table.bulkCreate(chunk, {
+        transaction: this.transaction,
+        updateOnDuplicate: [...columns, 'version', 'updatedAt'],
+      })
+    }
+  }
+
+  /**
    * Removes the row if it still has the version its editor saw.
    * @returns the row as it was
    * @throws AppError `stale_version`, `not_found`; the database's foreign keys answer as `in_use`

@@ -4,7 +4,7 @@ import { createHash } from 'node:crypto'
 import type { z } from 'zod'
 import { AppError, invalidField } from '../errors'
 import type { FarmRepositories } from '../repositories/inFarm'
-import type { PriceImportRow } from '../repositories/prices'
+import type { PriceImportRow, PriceRow } from '../repositories/prices'
 import { today } from './changes'
 import { guessMapping, missingFields } from './priceImport/mapping'
 import { NameIndex, nameKey } from './priceImport/names'
@@ -62,7 +62,7 @@ export async function applyImport(
   const [missing] = missingFields(request.mapping, request)
   if (missing)
     throw invalidField(`mapping.columns.${missing}`, 'missing_column', `No column holds the ${missing}.`)
-  const { plan, existing } = await readList(farm, request)
+  const { plan, existing } = await readList(farm, request, { forUpdate: true })
   if (plan.writes.length === 0) {
     throw new AppError('nothing_to_apply', {
       detail: 'No row of the list has a price that is not known already.',
@@ -124,7 +124,12 @@ interface ReadList {
   feeds: NameIndex<ImportFeed>
 }
 
-async function readList(farm: FarmRepositories, request: PreviewRequest): Promise<ReadList> {
+/** @param forUpdate locks the prices the list is set against, so that they stay as they are until it is applied */
+async function readList(
+  farm: FarmRepositories,
+  request: PreviewRequest,
+  { forUpdate = false }: { forUpdate?: boolean } = {},
+): Promise<ReadList> {
   const [account, feedRows, suppliers] = [
     await farm.account.get(),
     await farm.feeds.list(
@@ -165,7 +170,7 @@ async function readList(farm: FarmRepositories, request: PreviewRequest): Promis
     latest: today(new Date(farm.now.getTime() + DAY_MS)),
   }
   const outcomes = body.map((row) => readRow(row, rules))
-  const existing = await readExisting(farm, suppliersByKey, outcomes)
+  const existing = await readExisting(farm, suppliersByKey, outcomes, forUpdate)
   return { mapping, header, width, outcomes, plan: planImport(outcomes, existing), existing, feeds }
 }
 
@@ -173,17 +178,22 @@ async function readExisting(
   farm: FarmRepositories,
   suppliers: Existing['suppliers'],
   outcomes: readonly RowOutcome[],
+  forUpdate: boolean,
 ): Promise<Existing> {
   const feedIds = new Set(
     outcomes.flatMap((outcome) => (outcome.kind === 'read' ? [outcome.reading.feed.id] : [])),
   )
   const offerRows = feedIds.size > 0 ? await farm.offers.list({ feedId: [...feedIds] }) : []
   const keyOfSupplier = new Map([...suppliers].map(([key, { id }]) => [id, key]))
-  const prices = new Map<string, { id: string; date: string; price: string }[]>()
+  const prices = new Map<string, PriceRow[]>()
   const priceRows =
-    offerRows.length > 0 ? await farm.prices.list({ offerId: offerRows.map(({ id }) => id) }) : []
-  for (const { id, offerId, date, price } of priceRows) {
-    prices.set(offerId, [...(prices.get(offerId) ?? []), { id, date, price }])
+    offerRows.length > 0
+      ? await farm.prices.list({ offerId: offerRows.map(({ id }) => id) }, { forUpdate })
+      : []
+  for (const price of priceRows) {
+    const ofOffer = prices.get(price.offerId) ?? []
+    ofOffer.push(price)
+    prices.set(price.offerId, ofOffer)
   }
   const offers = offerRows.map(
     ({ id, supplierId, feedId, packageQuantity, packageUnit, freight }) =>

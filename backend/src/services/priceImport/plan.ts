@@ -1,5 +1,6 @@
 import type { ImportRow, PriceImport } from '@maslin/shared'
 import { Decimal } from 'decimal.js'
+import type { PriceRow } from '../../repositories/prices'
 import { perKg, quantityText } from '../offers'
 import { nameKey } from './names'
 import type { Reading, RowOutcome } from './rows'
@@ -11,7 +12,7 @@ export interface Existing {
   /** By offer key. */
   offers: ReadonlyMap<string, { id: string; freight: string }>
   /** Prices by offer id. */
-  prices: ReadonlyMap<string, readonly { id: string; date: string; price: string }[]>
+  prices: ReadonlyMap<string, readonly PriceRow[]>
 }
 
 /** A price to be written. */
@@ -20,7 +21,7 @@ export interface PlannedPrice {
   supplierKey: string
   offerKey: string
   /** The price of the same day that it replaces. */
-  replaces?: { id: string; price: string }
+  replaces?: PriceRow
 }
 
 export interface Plan {
@@ -115,7 +116,7 @@ function compare(group: readonly ReadRow[], existing: Existing) {
         },
       }
       const isWritten = !(same && before.date === reading.date)
-      const replaces = sameDay ? { replaces: { id: sameDay.id, price: sameDay.price } } : {}
+      const replaces = sameDay ? { replaces: sameDay } : {}
       return { outcome, row, write: isWritten ? { ...planned, ...replaces } : undefined }
     })
 }

@@ -27,11 +27,12 @@ export async function writePrices(
         importId,
       })),
   )
-  const replaced = writes.flatMap(({ reading, replaces }) => (replaces ? [{ ...replaces, reading }] : []))
-  for (const { id, reading } of replaced) {
-    await farm.prices.overwrite(id, { price: reading.price, source: 'import', importId })
-  }
-  return replaced.map(({ id, price, reading }) => ({ id, date: reading.date, price }))
+  const replaced = writes.flatMap(({ reading, replaces }) => (replaces ? [{ row: replaces, reading }] : []))
+  await farm.prices.overwriteMany(
+    replaced.map(({ row, reading }) => ({ ...row, price: reading.price, source: 'import', importId })),
+    ['price', 'source', 'importId'],
+  )
+  return replaced.map(({ row: { id, date, price } }) => ({ id, date, price }))
 }
 
 type Ids = ReadonlyMap<string, string>
