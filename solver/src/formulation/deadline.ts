@@ -57,3 +57,13 @@ export function spoken(outcome: Outcome): Exclude<Outcome, StoppedOutcome> {
   if (outcome.status === 'stopped') throw new AnalysisStopped(outcome.reason, outcome.detail)
   return outcome
 }
+
+/** What `work` gives, or `instead` where an engine found no trustworthy numbers for it; other errors pass. */
+export async function unlessSilent<Result>(work: Promise<Result>, instead: Result): Promise<Result> {
+  try {
+    return await work
+  } catch (error) {
+    if (error instanceof AnalysisStopped && error.reason === 'numerical') return instead
+    throw error
+  }
+}

@@ -2,7 +2,7 @@ import type { Answer, Margin, OptimalAnswer, Proof } from '@maslin/shared'
 import { marginalPrices, openAnalysis, type AnalysisSession, type MarginalPrice } from '../analysis'
 import { secondOpinion, type OptimalOutcome, type Outcome } from '../lp'
 import { cautionsOf } from './cautions'
-import type { Deadline, Solve } from './deadline'
+import { unlessSilent, type Deadline, type Solve } from './deadline'
 import { bindingSides, limitResultOf, sidesByLimit, type LimitStanding } from './limitResults'
 import { marginsOf, type Margins } from './margins'
 import type { Formulation, LimitSide } from './program'
@@ -30,7 +30,7 @@ export async function answerOptimal(context: SolveContext, first: OptimalOutcome
     const standings = await standingsOf(context, outcome, session, amounts)
     const limits = standings.map((standing) => limitResultOf(formulation, standing, amounts, cost.least))
     const prices = { formulation, optimal: outcome, session, deadline }
-    const blend = await withWindows(prices, plain)
+    const blend = await unlessSilent(withWindows(prices, plain), plain)
     const leftOut = [...(await leftOutByPrice(prices, plain)), ...formulation.excluded]
     const proof = await proofOf(context, outcome)
     const answer: OptimalAnswer = {
@@ -71,10 +71,14 @@ async function standingsOf(
         .map((side) => side.rowId),
     ),
   ]
+  // Sides left without a price here get theirs by `marginsOf`, which goes another way.
   const prices =
     rows.length === 0
       ? []
-      : await marginalPrices(formulation.program, outcome, { session, rows, deadlineMs: deadline.left() })
+      : await unlessSilent(
+          marginalPrices(formulation.program, outcome, { session, rows, deadlineMs: deadline.left() }),
+          [],
+        )
   const standings: LimitStanding[] = []
   for (const [i, sides] of byLimit.entries()) {
     const standing: LimitStanding = { sides, binding: [] }

@@ -89,5 +89,5 @@ describe('buy-in prices', () => {
       )
       expect(distances).toEqual([...distances].sort((a, b) => a - b))
     }
-  })
+  }, 30_000)
 })

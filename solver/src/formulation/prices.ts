@@ -92,7 +92,7 @@ function enteringAt(
       deadline.left()
       warm.setCost(column, price * (1 - step))
       const outcome = warm.solve(deadline.until)
-      if (outcome.status !== 'optimal') return {}
+      if (outcome.status !== 'optimal') continue
       const then = sharesOf(outcome, diet.mix.length)
       if (then[column]! <= NO_SHARE) continue
       const falls = before.map((share, j) => share - then[j]!)

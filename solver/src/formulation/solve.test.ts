@@ -81,7 +81,7 @@ describe('any mix', () => {
         there.blend.map(({ feedId, kgAsFed }) => [feedId, expect.closeTo(kgAsFed, 6)]),
       )
     }
-  })
+  }, 30_000)
 })
 
 describe('several mixes that cost the same', () => {
