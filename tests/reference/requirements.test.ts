@@ -204,6 +204,17 @@ describe('NRC 1981 (Goats)', () => {
     expect(later.source).toContain('Luo')
   })
 
+  it('kids eat no more than 80 g dry matter per kg of W^0.75, and the source of that is named', () => {
+    const kid = (bodyWeightKg: number, dailyGainG: number) =>
+      lookUp({ ...doe('growing', bodyWeightKg, { dailyGainG }), class: 'kidMeat' })
+    const small = kid(10, 150)
+    expect(small.intakeDryMatterKg).toBeCloseTo(0.08 * 10 ** 0.75, 12)
+    expect(small.source).toContain('per kg of W^0.75')
+    const slow = kid(30, 0)
+    expect(slow.intakeDryMatterKg).toBe(0.65)
+    expect(slow.source).not.toContain('per kg of W^0.75')
+  })
+
   it('gain beyond the table takes its last row and says so', () => {
     const kid: RequirementQuery = {
       ...doe('growing', 20, { dailyGainG: 250 }),

@@ -34,6 +34,14 @@ export function kidEnergy(type: KidType, bodyWeightKg: number, dailyGainG: numbe
 }
 
 /**
+ * The most a growing goat eats, kg dry matter per head and day: 80 g per kg of W^0.75, the greatest of the range seen in
+ * goats. The sums of NRC 1981 go up to twice that for small kids, who then would get a diet too thin.
+ */
+export function kidGreatestIntake(bodyWeightKg: number): number {
+  return 0.08 * metabolicWeight(bodyWeightKg)
+}
+
+/**
  * Metabolizable protein of growing goats, g per head and day: 3.07 per kg W^0.75 and 0.290 per g of gain (dairy and
  * local breeds) or 0.404 (meat breeds). Luo et al. 2004.
  */

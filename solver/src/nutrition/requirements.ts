@@ -6,6 +6,7 @@ import {
   goatCalcium,
   goatPhosphorus,
   kidEnergy,
+  kidGreatestIntake,
   kidMetabolizableProtein,
   type KidType,
 } from './goats'
@@ -225,6 +226,9 @@ function applyEquation(
     return
   }
   const protein = kidMetabolizableProtein(kid, bodyWeightKg, dailyGainG)
+  const most = kidGreatestIntake(bodyWeightKg)
+  const eatsLess = (draft.intakeDryMatterKg ?? 0) > most
+  if (eatsLess) draft.intakeDryMatterKg = most
   const demand = { intakeDryMatterKg: draft.intakeDryMatterKg ?? 0, dailyGainG }
   delete draft.amounts.totalDigestibleNutrients
   delete draft.amounts.digestibleEnergy
@@ -236,7 +240,8 @@ function applyEquation(
   replace('crudeProtein', crudeProteinFromMetabolizable(protein, KID_UNDEGRADED_PERCENT), 'luo-2004-goats')
   replace('calcium', goatCalcium(demand), 'nrc-2007-ca-p')
   replace('phosphorus', goatPhosphorus(demand), 'nrc-2007-ca-p')
-  draft.sourceKeys = [...new Set(['luo-2004-goats', 'nrc-2007-ca-p', ...draft.sourceKeys])]
+  const intakeKeys = eatsLess ? ['goat-intake-w75'] : []
+  draft.sourceKeys = [...new Set(['luo-2004-goats', 'nrc-2007-ca-p', ...intakeKeys, ...draft.sourceKeys])]
 }
 
 function finish(draft: Draft, stage: StageRow, tables: RequirementTables): RequirementLookup | undefined {
