@@ -9,6 +9,8 @@ import type { Formulation, LimitSide } from './program'
 const MOSTLY_ASSUMED = 0.5
 /** A change of cost this small, as a share of the cost over the whole limit, is none. */
 const NO_PRICE = 1e-9
+/** A value of a limit this small beside the limit is zero. */
+const NOTHING = 1e-12
 /** What a ratio or concentration reads where there is nothing to divide by; the largest value a limit may have. */
 const BEYOND_ANY_LIMIT = 1e9
 
@@ -52,10 +54,12 @@ export function limitResultOf(
   }
   if (chosen) {
     const scale = batchScale(formulation.input)
-    const scaled = (margin: Margin): Margin =>
-      margin.perUnit === undefined
-        ? margin
-        : { ...margin, perUnit: tidy(margin.perUnit * scale, sizeOf(reported), leastCost) }
+    const size = sizeOf(reported)
+    const scaled = ({ perUnit, until, impossible }: Margin): Margin => ({
+      ...(perUnit === undefined ? {} : { perUnit: tidy(perUnit * scale, size, leastCost) }),
+      ...(until === undefined ? {} : { until: Math.abs(until) <= NOTHING * size ? 0 : until }),
+      impossible,
+    })
     const { raise, lower } = { raise: scaled(chosen.margins.raise), lower: scaled(chosen.margins.lower) }
     const prices = [raise.perUnit ?? 0, lower.perUnit ?? 0]
     result.state = prices.some((price) => price !== 0) ? 'costs' : 'tight'
