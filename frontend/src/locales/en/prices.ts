@@ -24,6 +24,7 @@ export default {
     freight: 'freight',
   },
   freightIn: 'with {freight} freight',
+  cheapest: 'cheapest',
   noWeight: 'no test weight',
   setPrice: '{shown}: change the price of {feed} from {supplier}',
   setFirst: 'Set the price',
