@@ -1,6 +1,5 @@
 /** Warnings tied to species, class and stage, by the solver's codes. Where an animal can be hurt, local rules, the label, the veterinarian and the nutritionist come first. */
 export default {
-  title: 'Cautions',
   why: 'Why, and from where',
   hide: 'Less',
   feeds: 'Feeds: {names}.',

@@ -8,7 +8,6 @@ export default {
   farm: 'Farm',
   scenario: 'Scenario',
   group: 'For',
-  cost: 'A head and day',
   submitted: 'Submitted',
   note: 'Asked',
 } as const

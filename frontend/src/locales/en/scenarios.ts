@@ -32,7 +32,6 @@ export default {
     of: 'revision {number} of {count}',
     pricesAsOf: 'Prices as of {date}',
     by: 'saved by {name}, {date}',
-    decided: '{state} by {name}, {date}',
     hash: 'Content hash (SHA-256)',
     hashHelp: 'Worked out from the stored inputs and answer. Any change to them would give another.',
     note: 'Note',
@@ -60,9 +59,6 @@ export default {
       returned: 'Revision {number} returned',
     },
     stored: 'This is what was stored, with the prices of that day. Nothing here follows later changes.',
-    unreadable: 'This revision could not be read.',
-    mixGone: 'The mix it came from is gone; a new one is made from it.',
-    saidNothing: 'no words',
   },
   review: {
     title: 'Your decision on revision {number}',
