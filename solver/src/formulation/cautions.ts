@@ -68,7 +68,8 @@ function copperOf({ input, diet, composition }: Formulation, amounts: number[]):
   return copperCaution(copperThresholds, {
     species: input.group.species,
     totalPerKg: total / dryMatter,
-    assumedShare: total > 0 ? assumed / total : 0,
+    // Nothing known and nothing to assume: a total of nothing that is all guess.
+    assumedShare: total > 0 ? assumed / total : unknownFeeds.length > 0 ? 1 : 0,
     origin: tested ? 'tested' : 'book',
     feedIds: [...new Set([...unknownFeeds, largest.source.feed.id])],
   }).caution

@@ -115,6 +115,10 @@ describe('copperCaution', () => {
     expect(state({ totalPerKg: 9, assumedShare: 0.9 })).toBe('low')
   })
 
+  it('cannot be checked where nothing is known and nothing assumed', () => {
+    expect(state({ totalPerKg: 0, assumedShare: 1 })).toBe('notCheckable')
+  })
+
   it('counts what the known values alone exceed, however much is assumed', () => {
     expect(state({ totalPerKg: 60, assumedShare: 0.7, origin: 'tested' })).toBe('block')
     expect(state({ totalPerKg: 60, assumedShare: 0.7 })).toBe('acknowledge')

@@ -185,6 +185,7 @@ export function copperCaution(
   const mostlyAssumed = input.assumedShare > 0.5
   const state = ((): Exclude<CopperState, 'none'> => {
     if (known > stopAbove.value) return input.origin === 'tested' ? 'block' : 'acknowledge'
+    if (input.totalPerKg === 0 && mostlyAssumed) return 'notCheckable'
     if (input.totalPerKg <= warnAbove.value) return 'low'
     if (mostlyAssumed) return 'notCheckable'
     if (input.totalPerKg > stopAbove.value) return 'acknowledge'

@@ -32,6 +32,8 @@ export interface Ceiling extends DefaultFigure {
   each: boolean
   measure: 'shareOfDryMatter' | 'shareAsFed'
   within: 'mix' | 'diet'
+  /** False: no proposal may loosen it; absent: true. */
+  negotiable?: boolean
 }
 
 /** The shape of `data/first-mix.json`: the figures that make a first mix sensible. */

@@ -196,6 +196,15 @@ describe('ceilingLimits', () => {
     expect(byId(ceilingLimits(defaults, { phase: 'finishing' }, [limestone])).minerals?.max).toBe(0.02)
   })
 
+  it('lets no proposal loosen minerals, salt or the rate of the loose mineral', () => {
+    const loose = feed('loose', { bookKey: 'sheep-mineral', class: 'premix' })
+    const feeds = [limestone, salt, loose, hulls]
+    const fixed = firstMixLimits(defaults, ewes, requirement, { basis: 'perHead', feeds }).filter(
+      ({ negotiable }) => !negotiable,
+    )
+    expect(fixed.map(({ id }) => id)).toEqual(['mineral', 'minerals', 'salt-nacl'])
+  })
+
   it('holds sulphur where a feed has more than the diet may, 0.3 % on grain and 0.4 % else', () => {
     const distillers = feed('d', { values: { sulfur: { value: 9 } } })
     expect(byId(ceilingLimits(defaults, ewes, [distillers])).sulfur).toMatchObject({ max: 4 })

@@ -193,7 +193,8 @@ function intakeWindow(defaults: FirstMixDefaults, requirement: Requirement, opti
 
 /**
  * The loose mineral of the species at its rate, exactly: kg as fed per head and day, or its share of a batch. A small animal
- * gets less, by what it eats: the rate of a grown one would bring it too much selenium and, for goats, copper.
+ * gets less, by what it eats: the rate of a grown one would bring it too much selenium and, for goats, copper. No proposal
+ * may change the rate.
  */
 function mineralLimit(
   defaults: FirstMixDefaults,
@@ -215,6 +216,7 @@ function mineralLimit(
       : rate.value
   return {
     ...common,
+    negotiable: false,
     id: 'mineral',
     kind: 'feeds',
     of: { by: 'feeds', feedIds: [feed.id] },
@@ -241,7 +243,8 @@ export function ceilingLimits(
     const fitting = feeds.filter((feed) =>
       ceiling.bookKey === undefined ? feed.class === ceiling.feedClass : feed.bookKey === ceiling.bookKey,
     )
-    const rest = { ...common, kind: 'feeds', measure: ceiling.measure, within: ceiling.within } as const
+    const { measure, within, negotiable = true } = ceiling
+    const rest = { ...common, negotiable, kind: 'feeds', measure, within } as const
     if (!fitting.length) return []
     if (!ceiling.each) {
       const of = { by: 'class' as const, class: ceiling.feedClass }
