@@ -15,13 +15,16 @@ import { report, timed } from './measure'
 const FEEDS = 60
 const NUTRIENTS = 40
 const PROBLEMS = 60
-const ROUNDS = 8
+const ROUNDS = 6
 const WARM_UP = 2
 /** Full answer (scaling, solve, certificate, prices both ways with ranges) against the bare solve. */
 const TARGET = 2.5
 
-/** A mix of 60 invented feeds under 40 limits drawn around a hidden mix that meets them. */
-function mix(seed: number): LinearProgram {
+/**
+ * A mix of 60 invented feeds under 40 limits drawn around a hidden mix that meets them. With `degenerate` the last ten
+ * limits say the same as ten before them in another unit, so that wherever one binds two limits meet.
+ */
+function mix(seed: number, degenerate = false): LinearProgram {
   const random = seeded(seed)
   const share = Array.from({ length: FEEDS }, () => (random() < 0.3 ? random() : 0))
   const sum = share.reduce((a, b) => a + b, 0)
@@ -35,13 +38,30 @@ function mix(seed: number): LinearProgram {
     { id: 'total', lower: 1000, upper: 1000, entries: share.map((_, j): [number, number] => [j, 1]) },
   ]
   for (let i = 1; i < NUTRIENTS; i++) {
+    const twin = rows[i - 30]
+    if (degenerate && twin && i > 30) {
+      const entries = twin.entries.map(([j, value]): [number, number] => [j, value * 4.184])
+      rows.push({ id: `again ${i}`, lower: twin.lower * 4.184, upper: twin.upper * 4.184, entries })
+      continue
+    }
     const unit = 10 ** (1 - 4 * random())
     const content = share.map(() => (random() < 0.9 ? unit * random() : 0))
     const supply = content.reduce((whole, value, j) => whole + (value * share[j]! * 1000) / sum, 0)
     const entries = content.flatMap((value, j): [number, number][] => (value === 0 ? [] : [[j, value]]))
     if (random() < 0.6)
-      rows.push({ id: `least ${i}`, lower: supply * (0.9 + 0.08 * random()), upper: Infinity, entries })
-    else rows.push({ id: `most ${i}`, lower: -Infinity, upper: supply * (1.02 + 0.1 * random()), entries })
+      rows.push({
+        id: `least ${i}`,
+        lower: supply * (0.9 + 0.08 * random()),
+        upper: Infinity,
+        entries,
+      })
+    else
+      rows.push({
+        id: `most ${i}`,
+        lower: -Infinity,
+        upper: supply * (1.02 + 0.1 * random()),
+        entries,
+      })
   }
   return { columns, rows }
 }
@@ -119,8 +139,15 @@ export default async function run(): Promise<number> {
     const outcome = await solveLinearProgram(lp)
     if (outcome.status === 'optimal' && isNondegenerate(lp, outcome)) problems.push({ lp, bare: prepare(lp) })
   }
+  const degenerate: typeof problems = []
+  for (let seed = 1; degenerate.length < PROBLEMS / 6; seed++) {
+    const lp = mix(seed, true)
+    const outcome = await solveLinearProgram(lp)
+    if (outcome.status === 'optimal' && !isNondegenerate(lp, outcome))
+      degenerate.push({ lp, bare: prepare(lp) })
+  }
   const times: Record<
-    'bare' | 'solve' | 'full' | 'windows' | 'buyIn' | 'amounts' | 'conflict' | 'small',
+    'bare' | 'solve' | 'full' | 'windows' | 'buyIn' | 'amounts' | 'conflict' | 'small' | 'bareTied' | 'tied',
     number[]
   > = {
     bare: [],
@@ -131,10 +158,16 @@ export default async function run(): Promise<number> {
     amounts: [],
     conflict: [],
     small: [],
+    bareTied: [],
+    tied: [],
   }
-  for (let round = 0; round < ROUNDS + WARM_UP; round++)
+  for (let round = 0; round < ROUNDS + WARM_UP; round++) {
+    const keep = (name: keyof typeof times, ms: number) => round >= WARM_UP && times[name].push(ms)
+    for (const { lp, bare } of degenerate) {
+      keep('bareTied', await timed(bare))
+      keep('tied', await timed(async () => marginalPrices(lp, await optimum(lp))))
+    }
     for (const { lp, bare } of problems) {
-      const keep = (name: keyof typeof times, ms: number) => round >= WARM_UP && times[name].push(ms)
       keep('bare', await timed(bare))
       keep('solve', await timed(() => solveLinearProgram(lp)))
       keep('full', await timed(async () => marginalPrices(lp, await optimum(lp))))
@@ -151,6 +184,7 @@ export default async function run(): Promise<number> {
       if (round % 4 === 0)
         keep('conflict', await timed(() => findConflict(impossible(lp), { keep: ['total'] })))
     }
+  }
   console.log(
     `${PROBLEMS} mixes of ${FEEDS} feeds × ${NUTRIENTS} limits with nondegenerate optima, medians against`,
   )
@@ -162,6 +196,7 @@ export default async function run(): Promise<number> {
     TARGET,
   )
   report('  of this: scale, solve, certify', times.solve, times.bare)
+  report('full answer at degenerate optima, against their bare solve', times.tied, times.bareTied)
   report('cost windows of the feeds used', times.windows, times.bare)
   report('buy-in costs of the feeds not used', times.buyIn, times.bare)
   report('buy-in costs with the amounts just past them', times.amounts, times.bare)

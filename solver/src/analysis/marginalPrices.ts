@@ -1,4 +1,5 @@
 import type { LinearProgram, LinearRow, OptimalOutcome, SideName } from '../lp/types'
+import { reachAlong } from './coneReach'
 import { furthestLimit } from './face'
 import type { KernelRanges } from './kernelRanges'
 import { isZeroPrice } from './optimum'
@@ -90,6 +91,7 @@ class Ask {
     const { optimum } = this.workspace
     let price: number
     let duals: number[]
+    let reached: number | null = null
     if (optimum.pricesUnique) {
       duals = optimum.outcome.rows.map((row) => row.dual)
       price = duals[this.i]!
@@ -104,6 +106,8 @@ class Ask {
       if (outcome?.status !== 'optimal') return 'impossible'
       price = outcome.objective / step
       duals = outcome.rows.map((row) => row.dual)
+      const times = reachAlong(optimum, outcome)
+      if (times !== null) reached = this.limit + times * step
     }
     if (isZeroPrice(optimum.scaled, price, this.i)) {
       // Loosening a limit that costs nothing never begins to: the least cost is convex in it and cannot fall.
@@ -111,7 +115,7 @@ class Ask {
       if (this.side === 'upper' && direction > 0) return { price: 0, to: Infinity }
       price = 0
     }
-    return { price, to: await this.reach(duals, direction, this.limit) }
+    return { price, to: reached ?? (await this.reach(duals, direction, this.limit)) }
   }
 
   private async reach(duals: number[], direction: Direction, from: number): Promise<number> {
