@@ -111,8 +111,10 @@ async function amountOf(
   duals: number[],
   until: number,
 ): Promise<number | null> {
-  const { ranges, optimum } = workspace
-  return ranges ? ranges.largestEntry(j) : largestAmount(await workspace.face(), optimum, duals, j, until)
+  const { ranges, nondegenerate, optimum } = workspace
+  return ranges && nondegenerate
+    ? ranges.largestEntry(j)
+    : largestAmount(await workspace.face(), optimum, duals, j, until)
 }
 
 async function entryOf(

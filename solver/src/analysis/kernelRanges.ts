@@ -6,7 +6,9 @@ const STILL = 1e-11
 
 /**
  * How far the limit of each row at rest may move before another limit is met, by ratio tests on the factorised
- * basis. Exact where prices and amounts are the only ones; in units of the row, as the limit's own new value.
+ * basis. As far as that, and where it is not nothing, the basis prices hold: the basis stays feasible, and it stays
+ * optimal whatever the limits. Beyond, they end where the amounts are the only ones. In units of the row, as the
+ * limit's own new value.
  */
 export class KernelRanges {
   private readonly rates: Float64Array
@@ -47,12 +49,16 @@ export class KernelRanges {
     for (let c = 0; c < size; c++) {
       const j = this.kernel.columns[c]!
       const value = outcome.columns[j]!.value / scaled.colScale[j]!
-      meet(this.kernel.inverse[c * size + r]!, scaled.colLower[j]! - value, scaled.colUpper[j]! - value)
+      const below = this.o.columnAtLower[j] ? 0 : scaled.colLower[j]! - value
+      const above = this.o.columnAtUpper[j] ? 0 : scaled.colUpper[j]! - value
+      meet(this.kernel.inverse[c * size + r]!, below, above)
     }
     for (let q = 0; q < this.freeRows.length; q++) {
       const i = this.freeRows[q]!
       const activity = outcome.rows[i]!.activity * scaled.rowScale[i]!
-      meet(this.rates[q * size + r]!, scaled.rowLower[i]! - activity, scaled.rowUpper[i]! - activity)
+      const below = this.o.rowAtLower[i] ? 0 : scaled.rowLower[i]! - activity
+      const above = this.o.rowAtUpper[i] ? 0 : scaled.rowUpper[i]! - activity
+      meet(this.rates[q * size + r]!, below, above)
     }
     return [Math.min(down, 0), Math.max(up, 0)]
   }

@@ -1,7 +1,6 @@
 import type { LinearProgram, LinearRow, OptimalOutcome, SideName } from '../lp/types'
 import { reachAlong } from './coneReach'
 import { furthestLimit } from './face'
-import type { KernelRanges } from './kernelRanges'
 import { isZeroPrice } from './optimum'
 import type { AnalysisOptions, MarginalPrice } from './types'
 import { inWorkspace, positions, settled, sidesOf, type Workspace } from './workspace'
@@ -30,12 +29,11 @@ export function marginalPrices(
 ): Promise<MarginalPrice[]> {
   return inWorkspace(lp, optimal, options, async (workspace, until) => {
     const rows = options.rows ? positions(lp.rows, options.rows, 'row') : lp.rows.map((_, i) => i)
-    const { ranges } = workspace
     const prices: MarginalPrice[] = []
     for (const i of rows)
       for (const { side } of sidesOf(lp.rows[i]!)) {
         const ask = new Ask(workspace, i, side, until)
-        prices.push(ranges ? ask.fromKernel(ranges) : await ask.bySolving())
+        prices.push(await ask.answer())
       }
     return prices
   })
@@ -61,18 +59,9 @@ class Ask {
     this.touched = (side === 'upper' ? rowAtUpper[i] : rowAtLower[i]) === 1
   }
 
-  fromKernel(ranges: KernelRanges): MarginalPrice {
-    const range = this.touched ? ranges.of(this.i, this.limit) : null
-    if (!range) return this.slack(this.activity)
-    const price = this.workspace.optimum.outcome.rows[this.i]!.dual
-    const { lower, upper } = this.row
-    const upTo = this.side === 'lower' ? Math.min(range.upTo, upper) : range.upTo
-    const downTo = this.side === 'upper' ? Math.max(range.downTo, lower) : range.downTo
-    return this.answer({ price, to: upTo }, { price, to: downTo })
-  }
-
-  async bySolving(): Promise<MarginalPrice> {
-    if (this.touched) return this.answer(await this.move(1), await this.move(-1))
+  async answer(): Promise<MarginalPrice> {
+    if (this.touched)
+      return this.both(this.fromBasis(1) ?? (await this.move(1)), this.fromBasis(-1) ?? (await this.move(-1)))
     const { optimum } = this.workspace
     if (optimum.amountsUnique) return this.slack(this.activity)
     const duals = optimum.outcome.rows.map((row) => row.dual)
@@ -83,7 +72,28 @@ class Ask {
   private slack(meets: number): MarginalPrice {
     const up = this.side === 'lower' ? meets : Infinity
     const down = this.side === 'lower' ? -Infinity : meets
-    return this.answer({ price: 0, to: up }, { price: 0, to: down })
+    return this.both({ price: 0, to: up }, { price: 0, to: down })
+  }
+
+  /**
+   * The price of moving the touched limit one way as the basis has it, where the basis outlasts the move and the end of
+   * its price is known; null where another question must be asked.
+   */
+  private fromBasis(direction: Direction): Move | null {
+    const { ranges, optimum } = this.workspace
+    const status = optimum.basis.rows[this.i]!
+    const loosens = this.side === (direction > 0 ? 'upper' : 'lower')
+    // The basis does not lean on this limit: giving way changes nothing, ever.
+    if (status === 'basic') return loosens ? { price: 0, to: direction * Infinity } : null
+    if (!ranges || !optimum.amountsUnique) return null
+    if (this.side !== 'equal' && this.side !== status) return null
+    const { upTo, downTo } = ranges.of(this.i, this.limit)!
+    const to = direction > 0 ? upTo : downTo
+    if (to === this.limit) return null
+    const { lower, upper } = this.row
+    const capped =
+      this.side === 'equal' || loosens ? to : direction > 0 ? Math.min(to, upper) : Math.max(to, lower)
+    return { price: optimum.outcome.rows[this.i]!.dual, to: capped }
   }
 
   /** The exact price of moving the touched limit one way, and how far it holds. */
@@ -127,7 +137,7 @@ class Ask {
     return furthestLimit(face, this.workspace.optimum, duals, this.i, from, other, direction, this.until)
   }
 
-  private answer(more: Move, less: Move): MarginalPrice {
+  private both(more: Move, less: Move): MarginalPrice {
     const same =
       more !== 'impossible' &&
       less !== 'impossible' &&

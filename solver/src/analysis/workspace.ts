@@ -19,11 +19,16 @@ export class Workspace implements AnalysisSession {
     this.optimum = studyOptimum(program, outcome)
   }
 
-  /** Ratio tests on the factorised basis; null unless prices and amounts are proven to be the only ones. */
+  /** Ratio tests on the factorised basis; null where there is none. */
   get ranges(): KernelRanges | null {
-    const { kernel, pricesUnique, amountsUnique } = this.optimum
-    if (!kernel || !pricesUnique || !amountsUnique) return null
+    const { kernel } = this.optimum
+    if (!kernel) return null
     return (this.kernelRanges ??= new KernelRanges(this.optimum, kernel))
+  }
+
+  /** Prices and amounts are proven to be the only ones: the ratio tests then answer every question. */
+  get nondegenerate(): boolean {
+    return this.optimum.pricesUnique && this.optimum.amountsUnique
   }
 
   /**
