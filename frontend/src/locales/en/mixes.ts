@@ -387,6 +387,7 @@ export default {
   },
   curve: {
     title: 'Curve',
+    noMix: 'The curve comes back as soon as a mix is possible.',
     none: 'Choose a feed or a limit to see its curve.',
     price: '{name}, price',
     limitMin: '{name}, at least',

@@ -1,4 +1,4 @@
-import type { CurveAlong, FeedSummary, MixDraft, SolveResponse } from '@maslin/shared'
+import type { CurveAlong, FeedSummary, MixDraft, SolveResponse, SolverFeed } from '@maslin/shared'
 import { computed, ref, type ComputedRef, type Ref } from 'vue'
 import { paintFeeds, type Paint } from '../../charts/paint'
 import type { BenchContext, SavedCost } from './context'
@@ -13,6 +13,8 @@ export interface BenchSource {
   mayEdit: ComputedRef<boolean>
   commit: (next: MixDraft) => void
   farmFeeds: ComputedRef<readonly FeedSummary[]>
+  /** The cheapest offer of each feed on the day: the package that a tried price is told for. */
+  offers?: ComputedRef<ReadonlyMap<string, NonNullable<SolverFeed['priceOrigin']>>>
   saved: ComputedRef<SavedCost | undefined>
   answeredAt: ComputedRef<Date | undefined>
   curveOf?: BenchContext['curveOf']
@@ -55,7 +57,11 @@ export function makeBench(source: BenchSource): BenchContext {
     saved: source.saved,
     answeredAt: source.answeredAt,
     nameOf: (id) => solved.value.get(id)?.name ?? kept.value.get(id)?.name ?? '',
-    feedOf: (id) => solved.value.get(id),
+    feedOf: (id) => {
+      const feed = solved.value.get(id)
+      const priceOrigin = feed?.priceOrigin ?? source.offers?.value.get(id)
+      return feed && priceOrigin ? { ...feed, priceOrigin } : feed
+    },
     paintOf: (id) => paints.value.get(id) ?? unknownPaint,
     fillOf: (id) => `url(#feed-${id})`,
     words: useWords(),

@@ -91,7 +91,7 @@ export function useMixBench(mixId: () => string) {
     return sent.success ? sent.data : fetchMix(farmId.value, mixId()).catch(() => undefined)
   }
 
-  /** Takes the limits suggested for another basis; feeds and prices stay. One step of undo. */
+  /** Takes the limits suggested for another basis, and the feeds it needs besides those that are there. One step of undo. */
   async function changeBasis(basis: Basis): Promise<void> {
     const draft = history.present.value
     if (!draft) return
@@ -99,10 +99,13 @@ export function useMixBench(mixId: () => string) {
     try {
       const first = await fetchFirstMix(farmId.value, draft.groupId, basis)
       if (history.present.value !== draft) return
+      const there = new Set(draft.feeds.map((feed) => feed.feedId))
+      const missing = first.draft.feeds.filter((feed) => !there.has(feed.feedId))
       history.commit({
         ...draft,
         basis,
         batchDryMatterKg: first.draft.batchDryMatterKg,
+        feeds: [...draft.feeds, ...missing],
         limits: first.draft.limits,
       })
     } catch (error) {

@@ -1,4 +1,4 @@
-import type { PackageUnit, SolverFeed } from '@maslin/shared'
+import type { Offer, PackageUnit, SolverFeed } from '@maslin/shared'
 import { packageUnits } from '@maslin/shared'
 import { Decimal } from 'decimal.js'
 import type { Words } from './words'
@@ -39,4 +39,22 @@ export const priceFigure = (perKg: number, size: PricePackage, words: Words): st
  */
 export function perKgOf(price: string, packageKg: number): string {
   return new Decimal(price).div(packageKg).toDecimalPlaces(6).toFixed()
+}
+
+/** The offer of each feed that is cheapest per kg as fed, as the origin of a price. Offers without a price or a weight are left out. */
+export function cheapestOffers(
+  offers: readonly Offer[],
+): Map<string, NonNullable<SolverFeed['priceOrigin']>> {
+  const cheapest = new Map<string, { perKg: number; origin: NonNullable<SolverFeed['priceOrigin']> }>()
+  for (const { feedId, supplierName, packageQuantity, packageUnit, packageKg, current } of offers) {
+    const perKg = Number(current?.perKgAsFed)
+    if (!current || packageKg === undefined || !Number.isFinite(perKg)) continue
+    if (perKg >= (cheapest.get(feedId)?.perKg ?? Infinity)) continue
+    const { price, date } = current
+    cheapest.set(feedId, {
+      perKg,
+      origin: { supplierName, packageQuantity, packageUnit, packageKg, price, date },
+    })
+  }
+  return new Map([...cheapest].map(([feedId, { origin }]) => [feedId, origin]))
 }

@@ -7,7 +7,7 @@ import { byReplaced, leftOutSentence } from './leftOut'
 import { limitRows } from './limitRows'
 import { groupPeriodFactor, marginSentences, percentCost, stepOf } from './margins'
 import { boundsText, limitName, measureOf, niceStep } from './measures'
-import { perKgOf } from './prices'
+import { cheapestOffers, perKgOf } from './prices'
 import { proofDetails, proofLevel } from './proof'
 import { supplyStrips } from './supply'
 import { rich, strong, textOf, type Words } from './words'
@@ -268,6 +268,31 @@ describe('rich text', () => {
       { text: 'Oats', tone: 'strong' },
       { text: ' is kept out by you.', tone: 'plain' },
     ])
+  })
+})
+
+describe('the package of a tried price', () => {
+  it('is the one of the cheapest offer that has a price and a weight', () => {
+    const offer = {
+      id: ids.mix,
+      supplierId: ids.group,
+      supplierName: 'East Mill',
+      feedId: ids.corn,
+      feedName: 'Corn',
+      packageQuantity: 1,
+      packageUnit: 'bushel' as const,
+      packageKg: 25.4,
+      freight: '0',
+      version: 1,
+    }
+    const priced = (perKgAsFed: string) => ({ date: '2026-11-24', price: '8.10', perKgAsFed })
+    const origins = cheapestOffers([
+      { ...offer, current: priced('0.40') },
+      { ...offer, supplierName: 'Hill Farm Supply', current: priced('0.319') },
+      { ...offer, supplierName: 'No price' },
+      { ...offer, supplierName: 'No weight', packageKg: undefined, current: priced('0.1') },
+    ])
+    expect(origins.get(ids.corn)).toMatchObject({ supplierName: 'Hill Farm Supply', packageKg: 25.4 })
   })
 })
 
