@@ -9,6 +9,7 @@ import { onSessionEnd } from '../api/client'
 import { useAnnouncer } from '../composables/useAnnouncer'
 import { translate } from '../i18n'
 import { queryClient } from '../queries'
+import { nextPath } from './nextPath'
 import { useSessionStore } from '../stores/session'
 
 declare module 'vue-router' {
@@ -61,6 +62,7 @@ async function guard(to: RouteLocationNormalized) {
     return to.meta.open ? true : { name: 'sign-in', query: { next: to.fullPath, why: 'unreachable' } }
   }
   if (!session.session) return to.meta.open ? true : { name: 'sign-in', query: { next: to.fullPath } }
+  if (to.name === 'sign-in' && nextPath(to.query)) return nextPath(to.query)
   if (to.name === 'landing' || to.name === 'sign-in' || to.name === 'sign-up') {
     return session.homeFarmId ? { name: 'home', params: { farmId: session.homeFarmId } } : true
   }
