@@ -21,7 +21,7 @@ export default {
   },
   prices: {
     title: 'Type three prices',
-    text: 'What you pay for at least three feeds, with the package: 19/50 lb. Leave the others empty.',
+    text: 'What you pay for at least three feeds, with the package: 19/50 lb. Leave the others empty. Price the limestone and the mineral too: they cost little, and few mixes balance without them.',
     supplier: 'Bought from',
     price: 'Price of {feed}',
     save: 'Save these prices',
