@@ -4,6 +4,7 @@ import { readFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { promisify } from 'node:util'
+import { afterAll } from 'vitest'
 import type { LinearProgram } from '@maslin/solver'
 
 /**
@@ -39,18 +40,12 @@ export interface GlpkProblem {
   constant: number
 }
 
-let folder: string | undefined
+const folder = mkdtempSync(path.join(tmpdir(), 'glpk-'))
+afterAll(() => rmSync(folder, { recursive: true, force: true }))
 let files = 0
 
-/** A fresh file name in a folder of this process, which goes when the process does. */
-function scratch(): string {
-  if (!folder) {
-    folder = mkdtempSync(path.join(tmpdir(), 'glpk-'))
-    const made = folder
-    process.once('exit', () => rmSync(made, { recursive: true, force: true }))
-  }
-  return path.join(folder, `${files++}`)
-}
+/** A fresh file name in a folder that goes when the tests of the file that imports this are done. */
+const scratch = (): string => path.join(folder, `${files++}`)
 
 /** Lets glpsol read a problem file (`['-m', file]` or `['--mps', file]`) and returns what it read. */
 export async function readProblem(args: string[]): Promise<GlpkProblem> {
