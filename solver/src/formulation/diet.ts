@@ -23,6 +23,13 @@ export interface ForageSource {
   wasteShare: number
 }
 
+/**
+ * kg of the forage's dry matter left uneaten per kg dry matter of a feed. Minerals and premixes are licked by the gram and
+ * fill no rumen: they take the place of no forage (common practice, no source).
+ */
+export const displacedBy = (feed: SolverFeed, forage: ForageSource): number =>
+  feed.class === 'mineral' || feed.class === 'premix' ? 0 : forage.substitutionRate
+
 /** A ration of the base diet: a constant, kg of dry matter per head and day. */
 export interface RationSource {
   kind: 'ration'

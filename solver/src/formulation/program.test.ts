@@ -194,6 +194,26 @@ describe('feeds that may not go in', () => {
     expect(answer.cautions.map(({ code }) => code)).toContain('addedCopperLeftOut')
   })
 
+  it('stops where tested lots alone bring too much copper, whatever book feeds stand beside them', async () => {
+    const tested = feed('tested', 0.9, 0.1, {})
+    tested.values.copper = { value: 30, status: 'laboratory' }
+    const book = feed('book', 0.9, 0.2, { copper: 2 })
+    const of = { by: 'feeds' as const, feedIds: [tested.id] }
+    const levelAt = async (share: number) => {
+      const exactly = {
+        id: 'half',
+        kind: 'feeds',
+        measure: 'shareOfDryMatter',
+        min: share,
+        max: share,
+      } as const
+      const sheep = mix('batch').group({ species: 'sheep' }).with(tested, book)
+      return (await mixed(sheep.limit({ ...exactly, of }))).cautions.map(({ code }) => code)
+    }
+    expect(await levelAt(0.6)).toEqual(['copperBlock'])
+    expect(await levelAt(0.4)).toEqual(['copperWarn'])
+  })
+
   it('warns of natural copper in a diet for sheep and shows how much of it is assumed', async () => {
     const rich = feed('rich', 0.9, 0.2, { copper: 18 })
     const unknown = feed('unknown', 0.9, 0.1)

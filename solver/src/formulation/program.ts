@@ -1,7 +1,7 @@
 import type { FailedAnswer, FormulationInput, LeftOut, Limit, SolverFeed } from '@maslin/shared'
 import type { LinearProgram, LinearRow, SideName } from '../lp'
 import { compositionOf, orNothing, type Composition } from './composition'
-import { layOutDiet, REFERENCE_DRY_MATTER_KG, type Diet, type ForageSource } from './diet'
+import { displacedBy, layOutDiet, REFERENCE_DRY_MATTER_KG, type Diet, type ForageSource } from './diet'
 import { isConstant, sameForm, type Form } from './forms'
 import { measureOf, type BoundSide, type Measure } from './measures'
 import { rulesOf } from './cautions'
@@ -172,10 +172,9 @@ function addTotals({ input, diet, program }: Formulation): void {
       lower: forage.alone,
       upper: forage.alone,
       entries: [
-        ...diet.mix.map(({ column, feed }): [number, number] => [
-          column,
-          feed.dryMatter * forage.substitutionRate,
-        ]),
+        ...diet.mix
+          .map(({ column, feed }): [number, number] => [column, feed.dryMatter * displacedBy(feed, forage)])
+          .filter(([, displaced]) => displaced > 0),
         [forage.column, 1],
       ],
     })

@@ -19,7 +19,8 @@ export function eatenWith(input: FormulationInput, kgAsFed: Map<string, number>)
     inMix: true,
   }))
   if (input.basis === 'batch') return mix
-  const supplement = mix.reduce((sum, part) => sum + part.dry, 0)
+  const filling = mix.filter(({ feed }) => !['mineral', 'premix'].includes(feed.class))
+  const supplement = filling.reduce((sum, part) => sum + part.dry, 0)
   const base = input.baseDiet.flatMap((item) => {
     if (input.basis === 'perHead' && item.mode === 'freeChoice') return []
     const feed = input.baseFeeds.find(({ id }) => id === item.feedId)!
