@@ -30,6 +30,10 @@ let farmId = ''
 beforeAll(async () => {
   application = await startApplication()
   browser = await launchBrowser({ viewport: { width: 1440, height: 900 } })
+  page = await browser.newPage()
+  farmId = await signInAs(page, application, 'owner')
+  for (const { id, name } of await fetchMixes()) mixIds.set(name, id)
+  await page.close()
 })
 afterAll(async () => {
   await browser?.close()
@@ -47,9 +51,10 @@ afterEach(async () => {
   expect(browser.errors).toEqual([])
 })
 
+/** The mixes of the demo by name, as they were when the tests began. */
+const mixIds = new Map<string, string>()
 async function openBench(name = mixName): Promise<void> {
-  await page.goto(`${application.origin}/farms/${farmId}/mixes`)
-  await page.getByRole('link', { name }).click()
+  await page.goto(`${application.origin}/farms/${farmId}/mixes/${mixIds.get(name)}`)
   await page.getByRole('heading', { level: 1, name }).waitFor()
   await costShown(page)
 }
