@@ -215,7 +215,7 @@ export default {
     openGroup: 'Change the group',
     changeBasis: 'Change the basis',
     basisTakesLimits:
-      'The limits suggested for the new basis replace the present ones. Undo brings them back.',
+      'The limits suggested for the new basis replace the present ones, and feeds it needs are added. Undo brings everything back.',
     changeDay: 'Change the day',
     useToday: 'Always today’s prices',
     changeBatch: 'Change the size of the batch',
