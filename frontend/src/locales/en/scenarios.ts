@@ -29,6 +29,7 @@ export default {
   compareHint: 'Choose two to compare.',
   page: {
     revision: 'Revision {number}',
+    oneRevision: 'Revision',
     of: 'revision {number} of {count}',
     pricesAsOf: 'Prices as of {date}',
     by: 'saved by {name}, {date}',
