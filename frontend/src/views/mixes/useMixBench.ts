@@ -1,8 +1,10 @@
 import { mixSchema, type Mix, type MixDraft } from '@maslin/shared'
 import { useQueryClient } from '@tanstack/vue-query'
 import { computed, ref, shallowRef } from 'vue'
+import type { LocationQuery } from 'vue-router'
 import { ApiError } from '../../api/client'
 import { fetchFirstMix, fetchMix, updateMix } from '../../api/mixes'
+import { fetchRevision } from '../../api/scenarios'
 import { useFarm } from '../../composables/useFarm'
 import { useUndo } from '../../composables/useUndo'
 import { farmKey } from '../../queries'
@@ -21,6 +23,13 @@ export function draftOf(mix: Mix): MixDraft {
     ...(pricesAsOf === undefined ? {} : { pricesAsOf }),
     ...(note === undefined ? {} : { note }),
   }
+}
+
+/** A returned or approved revision that is being worked on again, as the address of the bench names it. */
+export function revisingOf({ scenario, revision }: LocationQuery) {
+  return typeof scenario === 'string' && typeof revision === 'string'
+    ? { scenarioId: scenario, revision: Number(revision) }
+    : undefined
 }
 
 /** A mix being edited: loading, undo, and saving over the version it was loaded with. */
@@ -50,11 +59,17 @@ export function useMixBench(mixId: () => string) {
     history.reset(savedDraft.value)
   }
 
-  async function load() {
+  /** @param revising a stored revision to go on from: it stands on the bench before anything can be edited */
+  async function load(revising?: { scenarioId: string; revision: number }) {
     loading.value = true
     problem.value = undefined
     try {
-      take(await fetchMix(farmId.value, mixId()))
+      const [next, stored] = await Promise.all([
+        fetchMix(farmId.value, mixId()),
+        revising && fetchRevision(farmId.value, revising.scenarioId, revising.revision),
+      ])
+      take(next)
+      if (stored) history.commit(stored.draft)
     } catch (error) {
       problem.value = error
     } finally {
