@@ -2,19 +2,16 @@ import {
   firstMixSchema,
   mixSchema,
   mixSummarySchema,
-  pageOf,
   type Basis,
   type FirstMix,
   type Mix,
   type MixDraft,
   type MixSummary,
 } from '@maslin/shared'
-import { get, post, put, remove } from './client'
+import { get, getAll, post, put, remove } from './client'
 
-const pageSchema = pageOf(mixSummarySchema)
-
-export const fetchMixes = async (farmId: string, signal?: AbortSignal): Promise<MixSummary[]> =>
-  (await get(`/farms/${farmId}/mixes`, pageSchema, { ...(signal ? { signal } : {}) })).items
+export const fetchMixes = (farmId: string): Promise<MixSummary[]> =>
+  getAll(`/farms/${farmId}/mixes`, mixSummarySchema)
 
 export const fetchMix = (farmId: string, mixId: string, signal?: AbortSignal): Promise<Mix> =>
   get(`/farms/${farmId}/mixes/${mixId}`, mixSchema, { ...(signal ? { signal } : {}) })

@@ -1,5 +1,4 @@
 import {
-  pageOf,
   revisionSchema,
   scenarioSchema,
   scenarioSummarySchema,
@@ -10,13 +9,12 @@ import {
   type ScenarioCreate,
   type ScenarioSummary,
 } from '@maslin/shared'
-import { get, patch, post, remove } from './client'
+import { get, getAll, patch, post, remove } from './client'
 
-const pageSchema = pageOf(scenarioSummarySchema)
 const under = (farmId: string, scenarioId: string) => `/farms/${farmId}/scenarios/${scenarioId}`
 
-export const fetchScenarios = async (farmId: string): Promise<ScenarioSummary[]> =>
-  (await get(`/farms/${farmId}/scenarios`, pageSchema)).items
+export const fetchScenarios = (farmId: string): Promise<ScenarioSummary[]> =>
+  getAll(`/farms/${farmId}/scenarios`, scenarioSummarySchema)
 
 export const fetchScenario = (farmId: string, scenarioId: string): Promise<Scenario> =>
   get(under(farmId, scenarioId), scenarioSchema)
