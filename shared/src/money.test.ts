@@ -34,3 +34,8 @@ describe('reading money', () => {
       expect(moneySchema.safeParse(bad).success, bad).toBe(false)
   })
 })
+
+it('refuses hostile prices instead of trying them for ever', () => {
+  for (const text of [`1${' '.repeat(200_000)}!`, `${'1 '.repeat(100_000)}x`, '9'.repeat(100_000)])
+    expect(parseMoney(text)).toEqual({ ok: false, reason: 'notMoney' })
+})

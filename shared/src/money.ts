@@ -12,16 +12,17 @@ export const currencySchema = z.string().regex(/^[A-Z]{3}$/, 'currency')
 export type MoneyReading =
   { ok: true; amount: string } | { ok: false; reason: 'empty' | 'notMoney' | 'negative' | 'tooLarge' }
 
+/** Longer texts hold no amount; they are not even tried, since a list may hold a cell of a million signs. */
+const LONGEST_AMOUNT = 200
+
 /**
  * Reads money as people type it: `$19.20`, `12,50 €`, `1,250.00`. The currency sign is dropped; the farm's currency holds.
  * @returns a decimal string with at most four places
  */
 export function parseMoney(text: string, decimal?: ',' | '.'): MoneyReading {
-  const cleaned = text
-    .trim()
-    .replace(/[\u00a0\u202f]/g, ' ')
-    .replace(/^(?:[A-Z]{3}|[A-Z]{0,2}[$€£¥])\s*|\s*(?:[A-Z]{3}|[$€£¥])$/g, '')
-    .trim()
+  const plainSpaces = text.trim().replace(/\s+/g, ' ')
+  if (plainSpaces.length > LONGEST_AMOUNT) return { ok: false, reason: 'notMoney' }
+  const cleaned = plainSpaces.replace(/^(?:[A-Z]{3}|[A-Z]{0,2}[$€£¥])\s*|\s*(?:[A-Z]{3}|[$€£¥])$/g, '').trim()
   if (!cleaned) return { ok: false, reason: 'empty' }
   if (/^[-\u2212(]/.test(cleaned)) return { ok: false, reason: 'negative' }
   const match = /^\d[\d.,\s']*$/.exec(cleaned)

@@ -81,3 +81,28 @@ describe('reading packages', () => {
     expect(parsePackageUnit('tons')).toBe('shortTon')
   })
 })
+
+describe('hostile texts', () => {
+  it.each(['constructor', '__proto__', 'toString', 'valueof'])('%s is no unit', (word) => {
+    expect(parsePackageUnit(word)).toBeUndefined()
+    expect(parseWeight(`50 ${word}`)).toMatchObject({ ok: false })
+  })
+
+  // Tried piece by piece in every way, the first of these would take hours.
+  it.each([
+    `per${' '.repeat(20_000)}!`,
+    `1${' '.repeat(200_000)}!`,
+    `${'1 '.repeat(100_000)}!`,
+    `${'1'.repeat(100_000)}/`,
+    `a${' .'.repeat(100_000)}!`,
+  ])('are refused, not tried for ever (%#)', (text) => {
+    expect(parseWeight(text).ok).toBe(false)
+    expect(parseNumber(text).ok).toBe(false)
+    expect(parsePackageUnit(text)).toBeUndefined()
+  })
+
+  it('with runs of spaces of any kind are read where they make sense', () => {
+    expect(parseWeight(`50${' '.repeat(300)}lb`)).toEqual({ ok: true, quantity: 50, unit: 'lb' })
+    expect(parseNumber('1\u202f250')).toEqual({ ok: true, value: 1250 })
+  })
+})

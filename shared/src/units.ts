@@ -44,7 +44,7 @@ export function packageWeightKg(
   return testWeightKg ? quantity * testWeightKg : undefined
 }
 
-const unitWords: Record<string, PackageUnit> = {
+const unitWords = new Map<string, PackageUnit>(Object.entries({
   kg: 'kg', kgs: 'kg', kilo: 'kg', kilos: 'kg', kilogram: 'kg', kilograms: 'kg', kilogramme: 'kg', kilogrammes: 'kg',
   g: 'g', gram: 'g', grams: 'g', gramme: 'g', grammes: 'g',
   lb: 'lb', lbs: 'lb', '#': 'lb', pound: 'lb', pounds: 'lb',
@@ -53,12 +53,15 @@ const unitWords: Record<string, PackageUnit> = {
   ton: 'shortTon', tons: 'shortTon', 'short ton': 'shortTon', 'short tons': 'shortTon', 'us ton': 'shortTon',
   t: 'tonne', tonne: 'tonne', tonnes: 'tonne', 'metric ton': 'tonne', 'metric tons': 'tonne', mt: 'tonne',
   bu: 'bushel', bushel: 'bushel', bushels: 'bushel', bsh: 'bushel',
-} // prettier-ignore
+})) // prettier-ignore
 
 /** The unit a word means, in the singular, plural or abbreviated; undefined for a word that is no unit. */
 export function parsePackageUnit(word: string): PackageUnit | undefined {
-  return unitWords[word.trim().toLowerCase().replace(/\.$/, '').replace(/\s+/g, ' ')]
+  return unitWords.get(word.trim().toLowerCase().replace(/\.$/, '').replace(/\s+/g, ' '))
 }
+
+/** Longer texts hold no number or weight; they are not even tried, since a list may hold a cell of a million signs. */
+const LONGEST_FIGURE = 200
 
 export type NumberReading =
   { ok: true; value: number } | { ok: false; reason: 'empty' | 'notANumber' | 'ambiguous' }
@@ -71,9 +74,10 @@ export type NumberReading =
 export function parseNumber(text: string, decimal?: ',' | '.'): NumberReading {
   const cleaned = text
     .trim()
-    .replace(/[\u00a0\u202f]/g, ' ')
+    .replace(/\s+/g, ' ')
     .replace(/\u2212/g, '-')
   if (!cleaned) return { ok: false, reason: 'empty' }
+  if (cleaned.length > LONGEST_FIGURE) return { ok: false, reason: 'notANumber' }
   const fraction = /^(?:(\d+)\s+)?(\d+)\s*\/\s*(\d+)$/.exec(cleaned)
   if (fraction) {
     const denominator = Number(fraction[3])
@@ -107,8 +111,10 @@ export type WeightReading =
  * stands, `decimal` the decimal sign as for `parseNumber`.
  */
 export function parseWeight(text: string, fallback?: PackageUnit, decimal?: ',' | '.'): WeightReading {
-  const cleaned = text.trim().replace(/[\u00a0\u202f]/g, ' ')
+  // Runs of spaces become one, or the pattern below would try every way of sharing them out.
+  const cleaned = text.trim().replace(/\s+/g, ' ')
   if (!cleaned) return { ok: false, reason: 'empty' }
+  if (cleaned.length > LONGEST_FIGURE) return { ok: false, reason: 'notANumber' }
   const parts = /^(?:per\s+)?([+-]?[\d.,/\s']*)\s*([a-z#][a-z.\s]*)?$/i.exec(cleaned)
   if (!parts) return { ok: false, reason: 'notANumber' }
   const [, numberText = '', unitText = ''] = parts

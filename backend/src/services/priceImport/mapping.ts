@@ -31,16 +31,19 @@ export interface MappingHints {
 }
 
 const sampleSize = 200
+/** As many columns as a mapping can name; a row of more is looked at so far. */
+const mostColumns = 100
 
 /** Recognises the columns of a list: by their headings, then by what stands in them. */
 export function guessMapping({ rows, delimiter }: Table, hints: MappingHints): ImportMapping {
-  const header = hasHeader(rows.map((row) => row.cells))
-  const body = rows.slice(header ? 1 : 0, sampleSize).map((row) => row.cells)
-  const width = Math.max(0, ...rows.slice(0, sampleSize).map((row) => row.cells.length))
+  const sample = rows.slice(0, sampleSize).map((row) => row.cells.slice(0, mostColumns))
+  const header = hasHeader(sample)
+  const body = sample.slice(header ? 1 : 0)
+  const width = Math.max(0, ...sample.map((cells) => cells.length))
   const columns = Array.from({ length: width }, (_, at) =>
     body.map((cells) => cells[at]?.trim() ?? '').filter((cell) => cell !== ''),
   )
-  const found = header ? byHeading(rows[0]?.cells ?? []) : {}
+  const found = header ? byHeading(sample[0] ?? []) : {}
   addByContent(found, columns, hints)
   correctPackage(found, columns)
   return {
@@ -152,9 +155,12 @@ function correctPackage(found: Columns, columns: readonly string[][]): void {
   }
 }
 
+/** The end of a cell tells its decimal sign; nobody writes a longer price. */
+const longestPrice = 40
+
 function guessDecimal(cells: readonly string[]): ImportMapping['decimal'] {
   const count = (pattern: RegExp) =>
-    cells.filter((cell) => pattern.test(cell.replace(/[^\d.,]+$/, ''))).length
+    cells.filter((cell) => pattern.test(cell.slice(-longestPrice).replace(/[^\d.,]+$/, ''))).length
   return count(/\d,\d{1,2}$/) > count(/\d\.\d{1,4}$/) ? ',' : '.'
 }
 

@@ -1,9 +1,26 @@
-/** A name without case, accents and punctuation: what two spellings of one name have in common. */
+/** Letters that no decomposition takes apart, though the database's collation holds them for the same. */
+const alike = new Map([
+  ['ß', 'ss'],
+  ['ø', 'o'],
+  ['ł', 'l'],
+  ['đ', 'd'],
+  ['ð', 'd'],
+  ['ħ', 'h'],
+  ['ŧ', 't'],
+  ['æ', 'ae'],
+  ['œ', 'oe'],
+])
+
+/**
+ * A name without case, accents, punctuation and invisible signs: what two spellings of one name have in common. Names
+ * that the database holds for equal have one key.
+ */
 export function nameKey(name: string): string {
   const plain = name
     .normalize('NFKD')
-    .replace(/\p{M}/gu, '')
+    .replace(/[\p{M}\p{Cf}]/gu, '')
     .toLowerCase()
+    .replace(/[ßøłđðħŧæœ]/g, (letter) => alike.get(letter) ?? letter)
     .replace(/[^\p{L}\p{N}]+/gu, ' ')
     .trim()
   return plain || name.trim().toLowerCase()

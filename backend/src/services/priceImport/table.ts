@@ -42,8 +42,11 @@ export function readTable(text: string, delimiter?: ImportMapping['delimiter']):
     )
   }
   const rows = withLines(parsed.data)
-  if (rows.length > MAX_IMPORT_ROWS) {
-    throw new AppError('too_large', { detail: `At most ${MAX_IMPORT_ROWS.toLocaleString('en')} rows.` })
+  // Reading stops early in a file of many empty lines: what stands after them would be left out in silence.
+  if (rows.length > MAX_IMPORT_ROWS || parsed.meta.truncated) {
+    throw new AppError('too_large', {
+      detail: `At most ${MAX_IMPORT_ROWS.toLocaleString('en')} rows, and not many more empty lines.`,
+    })
   }
   const used = delimiters.find((it) => it === parsed.meta.delimiter) ?? ','
   return { delimiter: used, rows }
