@@ -1,3 +1,4 @@
+import compression from 'compression'
 import cookieParser from 'cookie-parser'
 import express, { type Express } from 'express'
 import type { Logger } from 'pino'
@@ -26,7 +27,7 @@ export function createApp({ logger, isOpen = () => true, ...parts }: AppOptions)
   app.set('etag', false)
   app.set('query parser', 'simple')
   app.set('trust proxy', config.trustProxy)
-  app.use(requestId, logRequests(logger), securityHeaders(config.secure))
+  app.use(requestId, logRequests(logger), securityHeaders(config.secure), compression())
   app.use(
     '/api/v1',
     neverStored,

@@ -15,6 +15,8 @@ beforeAll(async () => {
   mkdirSync(join(frontend, 'assets'))
   writeFileSync(join(frontend, 'index.html'), '<!doctype html><title>Maslin</title>')
   writeFileSync(join(frontend, 'assets', 'index-4f3a2b1c.js'), 'export {}')
+  writeFileSync(join(frontend, 'assets', 'engine-9a8b7c6d.wasm'), Buffer.alloc(4096))
+  writeFileSync(join(frontend, 'assets', 'large-1b2c3d4e.js'), `export default '${'oats '.repeat(2000)}'`)
   writeFileSync(join(frontend, '.secret'), 'hidden')
   t = await startTestApp({ config: { frontendDirectory: frontend }, log: (line) => log.push(line) })
   person = await signUp(t)
@@ -105,7 +107,7 @@ describe('headers', () => {
 
 describe('pages', () => {
   it('are asked for each time, their hashed files kept for good', async () => {
-    for (const path of ['/', '/farms/x/feeds', '/sign-in?next=/']) {
+    for (const path of ['/', '/index.html', '/farms/x/feeds', '/sign-in?next=/']) {
       const page = await visit(t).get(path)
       expect(page.status).toBe(200)
       expect(page.headers).toMatchObject({
@@ -115,6 +117,25 @@ describe('pages', () => {
     }
     const script = await visit(t).get('/assets/index-4f3a2b1c.js')
     expect(script.headers['cache-control']).toBe('public, max-age=31536000, immutable')
+  })
+
+  it('and answers travel compressed where the browser can unpack them', async () => {
+    const script = await visit(t).get('/assets/large-1b2c3d4e.js').set('Accept-Encoding', 'gzip')
+    expect(script.headers).toMatchObject({ 'content-encoding': 'gzip', vary: 'Accept-Encoding' })
+    expect(script.headers['cache-control']).toContain('immutable')
+    const plain = await visit(t).get('/assets/large-1b2c3d4e.js').set('Accept-Encoding', 'identity')
+    expect(plain.headers).not.toHaveProperty('content-encoding')
+    const book = await person.visitor.get('/api/v1/book/feeds').set('Accept-Encoding', 'gzip')
+    expect(book.headers).toMatchObject({ 'content-encoding': 'gzip', 'cache-control': 'no-store' })
+    expect((book.body as { items: unknown[] }).items.length).toBeGreaterThan(60)
+  })
+
+  it('name WebAssembly as such, or browsers do not compile it as it comes in', async () => {
+    const engine = await visit(t).get('/assets/engine-9a8b7c6d.wasm')
+    expect(engine.headers).toMatchObject({
+      'content-type': 'application/wasm',
+      'x-content-type-options': 'nosniff',
+    })
   })
 
   it.each([

@@ -20,12 +20,14 @@ export function serveFrontend(directory: string): Router {
     // A file of an older build is gone: answering with the page would be taken for a script.
     (_request, _response, next) => next('router'),
   )
-  router.use(express.static(directory, { index: false, maxAge: '1h' }))
   const sendPage: RequestHandler = (_request, response, next) => {
     if (!existsSync(page)) return next()
     response.setHeader('Cache-Control', 'no-store')
     response.sendFile(page)
   }
+  // Under its own name it is the same page, and no cache keeps it either.
+  router.get('/index.html', sendPage)
+  router.use(express.static(directory, { index: false, maxAge: '1h' }))
   router.get('/{*path}', sendPage)
   return router
 }
