@@ -11,6 +11,7 @@ export const solveContextOf = (call: Call<unknown, unknown, unknown>): SolveCont
   library: call.requirements,
   pool: call.solving,
   signal: call.signal,
+  owner: String(call.request.params.farmId),
 })
 
 export const solveRoutes = [

@@ -14,6 +14,8 @@ export interface SolveContext {
   pool: Pick<SolvingPool, 'solveMix' | 'traceCurve'>
   /** Aborted when the caller goes away. */
   signal?: AbortSignal | undefined
+  /** Whose solves these are; one farm does not fill the line of all. */
+  owner?: string | undefined
 }
 
 /**
@@ -28,11 +30,13 @@ export async function solveDraft(
   return inTime(request.deadlineMs, async (left) => {
     const input = await context.run((farm) => gatherInput(farm, context.library, request.draft, within))
     const answer = await solved<Answer>(
-      context.pool.solveMix(input, request.secondOpinion, { deadlineMs: left(), signal: context.signal }),
+      context.pool.solveMix(input, request.secondOpinion, { deadlineMs: left(), ...waitingAs(context) }),
     )
     return { input, answer }
   })
 }
+
+const waitingAs = ({ signal, owner }: SolveContext) => ({ signal, owner })
 
 /** Least cost along a price or one side of a limit. Throws like `solveDraft`. */
 export async function traceDraftCurve(
@@ -44,7 +48,7 @@ export async function traceDraftCurve(
     const input = await context.run((farm) => gatherInput(farm, context.library, draft, 'draft.'))
     const ends = endsOf(input, request)
     return solved<Curve>(
-      context.pool.traceCurve(input, { along, ...ends }, { deadlineMs: left(), signal: context.signal }),
+      context.pool.traceCurve(input, { along, ...ends }, { deadlineMs: left(), ...waitingAs(context) }),
     )
   })
 }

@@ -21,6 +21,8 @@ export interface SolveLimits {
   deadlineMs: number
   /** Aborted when the caller goes away. */
   signal?: AbortSignal | undefined
+  /** Whose solve it is (a farm): owners take turns, and none fills the line for all. */
+  owner?: string | undefined
 }
 
 /** How long a solve that nobody waits for any more may run on: most end sooner than a new worker takes to start. */
@@ -118,7 +120,7 @@ export class SolvingPool {
   async #perform(job: (deadlineMs: number) => SolveJob, limits: SolveLimits): Promise<SolveResult> {
     if (this.#closed) throw new SolvingError('closed')
     const endsAt = performance.now() + limits.deadlineMs
-    await this.#slots.enter(limits.deadlineMs, limits.signal)
+    await this.#slots.enter(limits.deadlineMs, limits)
     return this.#inSlot(job, endsAt, limits.signal)
   }
 
