@@ -5,6 +5,11 @@ import type { Database } from './database'
 const wanted = [
   {
     variable: 'sql_mode',
+    ok: (value: string) => !value.includes('NO_BACKSLASH_ESCAPES'),
+    need: 'a mode without NO_BACKSLASH_ESCAPES, or a quotation mark in a text ends the text',
+  },
+  {
+    variable: 'sql_mode',
     ok: (value: string) => /STRICT_(ALL|TRANS)_TABLES/.test(value),
     need: 'STRICT_TRANS_TABLES, or values that do not fit are cut off in silence',
   },
