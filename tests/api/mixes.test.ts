@@ -52,6 +52,22 @@ describe('mixes', () => {
     expect(items[0]).not.toHaveProperty('limits')
   })
 
+  it('keep the feeds that only their limits name from being removed', async () => {
+    const feed = bodyOf<Feed>(
+      await farm.owner
+        .post(`${farm.at}/feeds`)
+        .send({ name: 'Rye grain', class: 'grain', dryMatter: 0.88, forage: false }),
+    )
+    const of = { by: 'feeds' as const, feedIds: [feed.id] }
+    const limit = { id: 'noRye', kind: 'feeds' as const, of, measure: 'shareAsFed' as const, max: 0 }
+    const mix = await add({ name: 'Without rye', limits: [...draft.limits, limit] as MixDraft['limits'] })
+    const removeFeed = () => farm.owner.delete(`${farm.at}/feeds/${feed.id}`).set(ifMatch(feed))
+    expect((await removeFeed().expect(409)).body).toMatchObject({ code: 'in_use' })
+    bodyOf(await put(mix, draftOf(mix)), 200)
+    await farm.owner.delete(`${farm.at}/mixes/${mix.id}`).set('If-Match', '"2"').expect(204)
+    await removeFeed().expect(204)
+  })
+
   it('puts a whole draft in place of the one before', async () => {
     const mix = await add()
     const next = {

@@ -97,11 +97,24 @@ export async function updateFeed(
   return after
 }
 
-/** @throws AppError `in_use` while an offer, a group or a mix refers to it */
+/** @throws AppError `in_use` while an offer, a group, a mix or a limit of a mix refers to it */
 export async function removeFeed(farm: FarmRepositories, id: string, version: number): Promise<void> {
+  // Whoever saves a mix locks its feeds too, so that none can be named in a limit meanwhile.
+  await farm.feeds.get(id, { forUpdate: true })
   const before = await getFeed(farm, id)
+  await requireNoLimitNames(farm, id)
   await farm.feeds.remove(id, version)
   await farm.audit.record({ action: 'delete', entity: 'feed', entityId: id, before })
+}
+
+/** Limits are stored as a document, which no foreign key guards. Ids stand in it letter by letter. */
+async function requireNoLimitNames(farm: FarmRepositories, feedId: string): Promise<void> {
+  const mixes = await farm.mixes.list({}, { columns: ['id', 'name', 'limits'] })
+  const naming = mixes.filter(({ limits }) => limits.includes(`"${feedId}"`)).map(({ name }) => name)
+  if (naming.length === 0) return
+  throw new AppError('in_use', {
+    detail: `A limit names this feed in: ${naming.slice(0, 5).join(', ')}.`,
+  })
 }
 
 async function requireFreeName(farm: FarmRepositories, name: string, exceptId?: string): Promise<void> {

@@ -20,7 +20,7 @@ export async function gatherInput(
   draft: MixDraft,
   within = '',
 ): Promise<FormulationInput> {
-  await checkDraft(farm, draft, within)
+  await checkDraft(farm, draft, { within })
   const group = await getGroup(farm, library, draft.groupId)
   const stage = stageOf(library, group.animal)
   if (!stage)

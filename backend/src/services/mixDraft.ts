@@ -4,15 +4,21 @@ import type { FarmRepositories } from '../repositories/inFarm'
 
 /**
  * Sees that everything a draft names is the farm's own: its group, feeds, offers, and the feeds of its limits.
- * Throws AppError `invalid_input` with the path of each that is not.
+ * Throws AppError `invalid_input` with the path of each that is not, a hundred at most.
+ * @param within prefix of the paths in problems (`draft.`)
+ * @param toSave locks the feeds, so that none is removed before the draft is saved
  */
-export async function checkDraft(farm: FarmRepositories, draft: MixDraft, within = ''): Promise<void> {
+export async function checkDraft(
+  farm: FarmRepositories,
+  draft: MixDraft,
+  { within = '', toSave = false }: { within?: string; toSave?: boolean } = {},
+): Promise<void> {
   const problems = [
     ...(await groupProblems(farm, draft)),
-    ...(await feedProblems(farm, draft)),
+    ...(await feedProblems(farm, draft, toSave)),
     ...(await offerProblems(farm, draft)),
   ].map((problem) => ({ ...problem, path: within + problem.path }))
-  if (problems.length > 0) throw new AppError('invalid_input', { errors: problems })
+  if (problems.length > 0) throw new AppError('invalid_input', { errors: problems.slice(0, 100) })
 }
 
 /** Every feed that a draft names, in its list and in its limits. */
@@ -32,10 +38,16 @@ async function groupProblems(farm: FarmRepositories, { groupId }: MixDraft): Pro
   return [{ path: 'groupId', code: 'unknown_group', message: 'The farm has no such group.' }]
 }
 
-async function feedProblems(farm: FarmRepositories, draft: MixDraft): Promise<FieldProblem[]> {
+async function feedProblems(
+  farm: FarmRepositories,
+  draft: MixDraft,
+  forUpdate: boolean,
+): Promise<FieldProblem[]> {
   const named = feedsNamedIn(draft)
   const ids = [...new Set(named.map(({ feedId }) => feedId))]
-  const known = new Set((await farm.feeds.list({ id: ids }, { columns: ['id'] })).map(({ id }) => id))
+  const known = new Set(
+    (await farm.feeds.list({ id: ids }, { columns: ['id'], forUpdate })).map(({ id }) => id),
+  )
   return named
     .filter(({ feedId }) => !known.has(feedId))
     .map(({ path }) => ({ path, code: 'unknown_feed', message: 'The farm keeps no such feed.' }))

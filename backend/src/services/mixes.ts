@@ -50,7 +50,7 @@ export async function getMix(farm: FarmRepositories, id: string): Promise<Mix> {
 
 /** Throws AppError `invalid_input` where the draft names what the farm does not have. */
 export async function createMix(farm: FarmRepositories, draft: MixDraft): Promise<Mix> {
-  await checkDraft(farm, draft)
+  await checkDraft(farm, draft, { toSave: true })
   const row = await farm.mixes.insert(mixColumns(draft))
   await writeFeeds(farm, row.id, draft)
   const mix = await getMix(farm, row.id)
@@ -66,7 +66,7 @@ export async function replaceMix(
   draft: MixDraft,
 ): Promise<Mix> {
   const before = await getMix(farm, id)
-  await checkDraft(farm, draft)
+  await checkDraft(farm, draft, { toSave: true })
   await farm.mixes.update(id, version, mixColumns(draft))
   await writeFeeds(farm, id, draft)
   const after = await getMix(farm, id)
