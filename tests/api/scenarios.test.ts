@@ -6,6 +6,7 @@ import { startTestApp, type TestAppOptions } from '../support/app'
 import {
   addGroup,
   bodyOf,
+  ewes,
   firstDraft,
   furnishFarm,
   ifMatch,
@@ -130,6 +131,16 @@ describe('scenarios', () => {
     expect((await openRevision(scenario, 1)).answer.status).toBe('infeasible')
     expect((await submit(scenario).expect(409)).body).toMatchObject({ code: 'wrong_state' })
     expect((await open(scenario)).latest.state).toBe('draft')
+  })
+
+  it('refuses costs that cannot be kept, with the reason', async () => {
+    const herd = await addGroup(farm, { ...ewes(farm), name: 'Very many', heads: 100_000 })
+    const dear = await firstDraft(farm, herd)
+    const feeds = dear.feeds.map((feed) => ({ ...feed, pricePerKg: '999999' }))
+    const answer = await farm.owner
+      .post(`${farm.at}/scenarios`)
+      .send({ name: 'Too dear', draft: { ...dear, feeds } })
+    expect(answer.body).toMatchObject({ status: 400, errors: [{ code: 'cost_too_large' }] })
   })
 
   it('is handed in once, and only its latest revision', async () => {

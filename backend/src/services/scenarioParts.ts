@@ -1,5 +1,6 @@
 import type { Answer, Comment, RevisionSummary } from '@maslin/shared'
 import { Decimal } from 'decimal.js'
+import { invalidField } from '../errors'
 import type { CommentRow, ReviewRow, ScenarioRevisionRow } from '../repositories/scenarios'
 import { plainDecimal } from './offers'
 
@@ -43,7 +44,14 @@ export function costsOf(answer: Answer): Costs {
   }
 }
 
-const decimal = (value: number): string => new Decimal(value).toDecimalPlaces(6).toFixed()
+/** More than the columns hold, and than any mix costs. */
+const MOST_COST = 1e12
+
+function decimal(value: number): string {
+  if (Math.abs(value) < MOST_COST) return new Decimal(value).toDecimalPlaces(6).toFixed()
+  const message = 'The mix costs more than can be kept: look at the prices tried and the heads of the group.'
+  throw invalidField('draft.feeds', 'cost_too_large', message)
+}
 
 export function toRevisionSummary(row: ScenarioRevisionRow): RevisionSummary {
   return {
