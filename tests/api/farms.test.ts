@@ -1,6 +1,7 @@
-import type { Farm } from '@maslin/shared'
+import type { Farm, Offer } from '@maslin/shared'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { startTestApp, type TestApp } from '../support/app'
+import { addGroup, bodyOf, firstDraft, ifMatch, startTestFarm } from '../support/farm'
 import { farmApi } from '../support/farmApi'
 import { signUp } from '../support/people'
 
@@ -43,5 +44,21 @@ describe('the farm', () => {
     const refused = await api.patch('', 2, { currency: 'USD', name: 'Other' })
     expect(refused.body).toMatchObject({ status: 409, code: 'wrong_state', errors: [{ path: 'currency' }] })
     expect((await api.patch('', 2, { currency: 'CAD', name: 'Same' })).body).toMatchObject({ name: 'Same' })
+  })
+
+  it('keeps its currency while a mix holds a price tried out', async () => {
+    const farm = await startTestFarm()
+    try {
+      const draft = await firstDraft(farm, await addGroup(farm))
+      const feeds = draft.feeds.map((feed) => ({ ...feed, pricePerKg: '0.3' }))
+      bodyOf(await farm.owner.post(`${farm.at}/mixes`).send({ ...draft, feeds }))
+      const { items } = bodyOf<{ items: Offer[] }>(await farm.owner.get(`${farm.at}/offers`), 200)
+      for (const offer of items)
+        await farm.owner.delete(`${farm.at}/offers/${offer.id}`).set(ifMatch(offer)).expect(204)
+      const refused = await farm.owner.patch(farm.at).set('If-Match', '"1"').send({ currency: 'CAD' })
+      expect(refused.body).toMatchObject({ status: 409, code: 'wrong_state', errors: [{ path: 'currency' }] })
+    } finally {
+      await farm.close()
+    }
   })
 })

@@ -8,7 +8,7 @@ export async function getFarm(farm: FarmRepositories): Promise<Farm> {
   return toFarm(await farm.account.get())
 }
 
-/** @throws AppError `wrong_state` for another currency while there are prices: those keep the currency they were given in */
+/** @throws AppError `wrong_state` for another currency while there are prices or costs: those keep the one they were given in */
 export async function updateFarm(
   farm: FarmRepositories,
   version: number,
@@ -16,8 +16,8 @@ export async function updateFarm(
 ): Promise<Farm> {
   const before = toFarm(await farm.account.get({ forUpdate: true }))
   const otherCurrency = changes.currency !== undefined && changes.currency !== before.currency
-  if (otherCurrency && before.version === version && (await farm.prices.count()) > 0) {
-    const message = `The farm has prices in ${before.currency}; the currency cannot change any more.`
+  if (otherCurrency && before.version === version && (await hasAmounts(farm))) {
+    const message = `The farm has prices or costs in ${before.currency}; the currency cannot change any more.`
     throw new AppError('wrong_state', {
       detail: message,
       errors: [{ path: 'currency', code: 'has_prices', message }],
@@ -26,4 +26,11 @@ export async function updateFarm(
   const after = toFarm(await farm.account.update(version, withoutAbsent(changes)))
   await farm.audit.record({ action: 'update', entity: 'farm', entityId: farm.farmId, before, after })
   return after
+}
+
+/** Amounts stand in offers' prices, in prices tried out in a mix, and in the costs of scenarios. */
+async function hasAmounts(farm: FarmRepositories): Promise<boolean> {
+  if ((await farm.prices.count()) > 0 || (await farm.scenarios.count()) > 0) return true
+  const tried = await farm.mixFeeds.list({}, { columns: ['pricePerKg'] })
+  return tried.some(({ pricePerKg }) => pricePerKg !== null)
 }
