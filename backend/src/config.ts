@@ -118,3 +118,9 @@ export function readConfig(environment: Record<string, string | undefined>): Con
     shutdownMs: env.SHUTDOWN_SECONDS * 1000,
   }
 }
+
+const loopback = /^(localhost|127(\.\d{1,3}){3}|::1|\[::1\])$/
+
+/** Whether browsers elsewhere reach the server over plain http, where anybody on the way reads along. */
+export const sendsPasswordsOpenly = ({ host, secure, publicOrigin }: Config): boolean =>
+  !secure && (publicOrigin ? !loopback.test(new URL(publicOrigin).hostname) : !loopback.test(host))

@@ -1,7 +1,7 @@
 import type { Server } from 'node:http'
 import type { Logger } from 'pino'
 import { createApp } from './app'
-import { ConfigError, readConfig, type Config } from './config'
+import { ConfigError, readConfig, sendsPasswordsOpenly, type Config } from './config'
 import { openDatabase, type Database } from './database/database'
 import { migrate } from './database/migrate'
 import { checkServerSettings } from './database/settings'
@@ -15,6 +15,12 @@ import { SolvingPool } from './solving/pool'
 async function start(): Promise<void> {
   const config = readConfig(process.env)
   const logger = createLogger(config.logLevel)
+  if (sendsPasswordsOpenly(config)) {
+    logger.warn(
+      { host: config.host },
+      'not on loopback and not over TLS: passwords and sign-ins can be read on the way',
+    )
+  }
   const database = openDatabase(config.databaseUrl, { poolSize: config.databasePool })
   const requirements = await prepare(database, config, logger)
   const solving = await SolvingPool.create({
