@@ -20,6 +20,8 @@ export const memberRoutes = [
     method: 'post',
     path: '/farms/:farmId/members',
     access: 'members.manage',
+    // The answer tells whether an address has an account.
+    attemptsPerQuarterHour: 60,
     body: memberCreateSchema,
     answer: memberSchema,
     status: 201,
