@@ -207,6 +207,8 @@ export async function updateOffer(
 
 /** Removes an offer with its prices, which stay on record in the audit. */
 export async function removeOffer(farm: FarmRepositories, id: string, version: number): Promise<void> {
+  // Locked first: a price set meanwhile would be gone without being on record.
+  await farm.offers.get(id, { forUpdate: true })
   const before = await getOffer(farm, id)
   const prices = await farm.prices.list({ offerId: id }, { orderBy: [['date', 'ASC']] })
   await farm.offers.remove(id, version)
