@@ -25,10 +25,11 @@ export async function migrate(database: Database): Promise<string[]> {
     logger: undefined,
   })
   return database.transaction(async (transaction) => {
-    await database.sequelize.query("SELECT GET_LOCK('maslin.migrate', 60)", {
-      transaction,
-      type: QueryTypes.SELECT,
-    })
+    const [lock] = await database.sequelize.query<{ taken: number | null }>(
+      "SELECT GET_LOCK('maslin.migrate', 60) AS taken",
+      { transaction, type: QueryTypes.SELECT },
+    )
+    if (lock?.taken !== 1) throw new Error('another process has been changing the schema for a minute')
     try {
       return (await umzug.up()).map((step) => step.name)
     } finally {
