@@ -28,7 +28,8 @@ export async function firstMix(
   const basis = wanted ?? (group.baseDiet.length > 0 ? 'besideForage' : 'perHead')
   const kind = { species: group.animal.species, phase: stage.phase, male: stage.male }
 
-  const kept = (await listFeeds(farm)).filter((feed) => !feed.archived)
+  const all = await listFeeds(farm)
+  const kept = all.filter((feed) => !feed.archived)
   const suggestion = suggestedFeeds(library.defaults, kind)
   const beside = basis === 'besideForage'
   const baseIds = new Set(group.baseDiet.map(({ feedId }) => feedId))
@@ -49,9 +50,10 @@ export async function firstMix(
   const missing = keys.filter((key) => !held.has(key))
 
   const requirement = group.requirement ?? fallbackRequirement(group)
-  const feeds = new Map(kept.map((feed) => [feed.id, feed]))
+  // What the group eats counts, archived or not.
+  const feeds = new Map(all.map((feed) => [feed.id, feed]))
   const base = resolveBaseDiet({ group, stage, feeds, defaults: library.defaults })
-  const counted = [...chosen, ...(beside ? kept.filter(({ id }) => baseIds.has(id)) : [])]
+  const counted = [...chosen, ...(beside ? all.filter(({ id }) => baseIds.has(id)) : [])]
   const limits = firstMixLimits(library.defaults, kind, requirement, {
     basis,
     feeds: counted.map((feed) => ({ ...feed, values: solverFeed(feed).values })),
