@@ -251,6 +251,37 @@ describe('leaving the bench', () => {
   })
 })
 
+describe('working on a revision again', () => {
+  it('waits for it, however late it comes, so that no edit is taken back', async () => {
+    await page.goto(`${application.origin}/farms/${farmId}/scenarios`)
+    await page.getByRole('link', { name: 'Ewes before lambing' }).click()
+    const again = page.getByRole('button', { name: 'Work on it again' })
+    await again.waitFor()
+    let release = () => {}
+    const held = new Promise<void>((resolve) => (release = resolve))
+    await page.route('**/revisions/*', async (route) => {
+      await held
+      await route.continue()
+    })
+    const asked = page.waitForRequest('**/revisions/*')
+    const mix = page.waitForResponse(/\/mixes\/[^/]+$/)
+    await again.click()
+    await Promise.all([asked, mix.then((answer) => answer.finished())])
+    // Time enough for a bench that does not wait to be drawn.
+    for (let rounds = 0; rounds < 5; rounds += 1) await fetchMixes()
+    await page.evaluate(
+      () => new Promise((drawn) => requestAnimationFrame(() => requestAnimationFrame(drawn))),
+    )
+    expect(await bounds('Crude protein').count()).toBe(0)
+    release()
+    await costShown(page)
+    await setLeast('Crude protein', '243')
+    await bounds('Crude protein').getByText('at least 243 g').waitFor()
+    await settled(page)
+    await bounds('Crude protein').getByText('at least 243 g').waitFor()
+  })
+})
+
 describe('what a role may do on the bench', () => {
   it('lets a hand read the mix and change nothing', async () => {
     await signInAs(page, application, 'hand')
