@@ -41,6 +41,7 @@ export class SolvingPool {
   readonly #onCrash: (error: Error) => void
   readonly #workers: number
   #lastAnswer = -Infinity
+  #probing: Promise<boolean> | undefined
   #closed = false
 
   private constructor(options: SolvingPoolOptions, workerFile: string) {
@@ -93,6 +94,12 @@ export class SolvingPool {
   /** True when a worker answers: by a recent solve, else by solving a tiny problem now. */
   async ready(): Promise<boolean> {
     if (performance.now() - this.#lastAnswer < PROOF_OF_LIFE_MS) return true
+    this.#probing ??= this.#probe().finally(() => (this.#probing = undefined))
+    return this.#probing
+  }
+
+  /** One for all who ask meanwhile: anybody may ask, and the places are for the keepers. */
+  async #probe(): Promise<boolean> {
     try {
       return (await this.#perform((deadlineMs) => ({ kind: 'probe', deadlineMs }), {
         deadlineMs: PROBE_MS,
