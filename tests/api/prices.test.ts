@@ -234,3 +234,29 @@ describe('suppliers', () => {
     expect((await api.delete(`/suppliers/${supplier.id}`, 1)).status).toBe(204)
   })
 })
+
+describe('today', () => {
+  const dayFromNow = (days: number) => new Date(Date.now() + days * 86_400_000).toISOString().slice(0, 10)
+  const currentFor = async (feedId: string, clientDay?: string) => {
+    const request = api.get(`/offers?feedId=${feedId}`)
+    if (clientDay !== undefined) request.set('Client-Day', clientDay)
+    return ((await request).body as { items: Offer[] }).items[0]?.current
+  }
+
+  it('is the day of the person’s calendar, which the server’s may not have reached yet', async () => {
+    const { feedId, supplierId } = await feedAndSupplier()
+    await api.makeOffer({ feedId, supplierId, price: '10', date: dayFromNow(1) })
+    expect(await currentFor(feedId)).toBeUndefined()
+    expect(await currentFor(feedId, dayFromNow(1))).toMatchObject({ date: dayFromNow(1), price: '10' })
+  })
+
+  it.each([dayFromNow(3), dayFromNow(-3), 'tomorrow', '9999-99-99'])(
+    'is not the %s of a wrong clock',
+    async (day) => {
+      const { feedId, supplierId } = await feedAndSupplier()
+      await api.makeOffer({ feedId, supplierId, price: '10', date: dayFromNow(0) })
+      await api.makeOffer({ feedId, supplierId, packageQuantity: 25, price: '9', date: dayFromNow(2) })
+      expect(await currentFor(feedId, day)).toMatchObject({ date: dayFromNow(0) })
+    },
+  )
+})

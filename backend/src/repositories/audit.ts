@@ -15,6 +15,8 @@ export interface AuditEntry {
 export interface Actor {
   userId: string | null
   requestId: string
+  /** The day it is where the person sits, `YYYY-MM-DD`; left out: the day in UTC. */
+  day?: string | undefined
 }
 
 /** What happened on a farm: written with the change itself, in its transaction, and never changed afterwards. */

@@ -22,6 +22,8 @@ export function inFarm(database: Database, farmId: string, transaction: Transact
     farmId,
     userId: actor.userId,
     now,
+    /** The actor's calendar day: a price of their today holds for them, whatever day it is at the server. */
+    today: actor.day ?? now.toISOString().slice(0, 10),
     account: new FarmAccount(models, ...parts),
     members: new FarmTable(models.memberships, ...parts),
     people: new People(models, transaction),

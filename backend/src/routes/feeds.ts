@@ -8,7 +8,6 @@ import {
   pageOf,
 } from '@maslin/shared'
 import { z } from 'zod'
-import { today } from '../services/changes'
 import { createFeed, getFeed, listFeedSummaries, removeFeed, updateFeed } from '../services/feeds'
 import { route } from './route'
 
@@ -25,7 +24,7 @@ export const feedRoutes = [
     query: z.object({ asOf: dateSchema.optional() }),
     answer: pageOf(feedSummarySchema),
     handle: ({ query, inFarm }) =>
-      inFarm(async (farm) => ({ items: await listFeedSummaries(farm, query.asOf ?? today()) })),
+      inFarm(async (farm) => ({ items: await listFeedSummaries(farm, query.asOf ?? farm.today) })),
   }),
   route({
     method: 'post',

@@ -9,7 +9,6 @@ import {
   priceSetSchema,
 } from '@maslin/shared'
 import { z } from 'zod'
-import { today } from '../services/changes'
 import { createOffer, getOffer, listOffers, removeOffer, setPrice, updateOffer } from '../services/offers'
 import { listPrices } from '../services/prices'
 import { route } from './route'
@@ -26,7 +25,7 @@ export const offerRoutes = [
     query: offersQuerySchema,
     answer: pageOf(offerSchema),
     handle: ({ query, inFarm }) =>
-      inFarm(async (farm) => ({ items: await listOffers(farm, query.asOf ?? today(), query.feedId) })),
+      inFarm(async (farm) => ({ items: await listOffers(farm, query.asOf ?? farm.today, query.feedId) })),
   }),
   route({
     method: 'post',

@@ -1,4 +1,4 @@
-import { idSchema, may, type Action, type Role } from '@maslin/shared'
+import { dateSchema, idSchema, may, type Action, type Role } from '@maslin/shared'
 import { Router, type Request, type RequestHandler, type Response } from 'express'
 import { signedInFrom } from '../auth/signedIn'
 import { AppError, notFound } from '../errors'
@@ -8,6 +8,7 @@ import { attemptLimit } from '../middleware/attemptLimit'
 import { requestIdOf } from '../middleware/requestContext'
 import { inFarm } from '../repositories/inFarm'
 import { accounts } from '../repositories/accounts'
+import { today } from '../services/changes'
 import type { Call, Route, Services } from './route'
 
 /** Makes every route answer, each step in the same order: who, whether they may, the path, the version, the body. */
@@ -157,7 +158,7 @@ function makeCall(
     role: () => roleFrom(response),
     inFarm: (work) => {
       roleFrom(response)
-      const actor = { userId: signedIn().id, requestId }
+      const actor = { userId: signedIn().id, requestId, day: clientDay(request) }
       const farmId = String(request.params.farmId)
       const { database } = services
       return database.transaction((transaction) => work(inFarm(database, farmId, transaction, actor)))
@@ -167,6 +168,15 @@ function makeCall(
     request,
     response,
   }
+}
+
+const DAY_MS = 24 * 3600 * 1000
+
+/** The calendar day of the caller's clock (`Client-Day`), as long as it can be today somewhere on earth. */
+function clientDay(request: Request): string | undefined {
+  const given = dateSchema.safeParse(request.get('client-day'))
+  const possible = [-1, 0, 1].map((days) => today(new Date(Date.now() + days * DAY_MS)))
+  return given.success && possible.includes(given.data) ? given.data : undefined
 }
 
 function send(route: Route, response: Response, result: unknown): void {

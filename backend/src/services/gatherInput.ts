@@ -1,7 +1,6 @@
 import type { Feed, FormulationInput, MixDraft } from '@maslin/shared'
 import { AppError } from '../errors'
 import type { FarmRepositories } from '../repositories/inFarm'
-import { today } from './changes'
 import { toFeed } from './feeds'
 import { buildFormulationInput, type SolverPrice } from './formulationInput'
 import { getGroup } from './groups'
@@ -34,7 +33,7 @@ export async function gatherInput(
       ],
     })
   const ids = new Set([...draft.feeds, ...group.baseDiet].map(({ feedId }) => feedId))
-  const day = draft.pricesAsOf ?? today(farm.now)
+  const day = draft.pricesAsOf ?? farm.today
   const offers = await pricesAsOf(farm, day)
   const { currency } = await farm.account.get()
   return buildFormulationInput({

@@ -12,7 +12,7 @@ import type { z } from 'zod'
 import { AppError, invalidField, notFound } from '../errors'
 import type { FarmRepositories } from '../repositories/inFarm'
 import type { OfferRow, PricedOfferRow } from '../repositories/prices'
-import { today, withoutAbsent } from './changes'
+import { withoutAbsent } from './changes'
 import { putPrice } from './prices'
 
 /** Trailing zeros of a stored decimal say nothing: `12.5000` is `12.5`. */
@@ -152,7 +152,7 @@ export async function listOffers(farm: FarmRepositories, date: string, feedId?: 
 }
 
 /** An offer with its price on a day. */
-export async function getOffer(farm: FarmRepositories, id: string, date = today()): Promise<Offer> {
+export async function getOffer(farm: FarmRepositories, id: string, date = farm.today): Promise<Offer> {
   const [row] = await farm.offerPrices.asOf(date, { offerId: id })
   if (!row) throw notFound()
   return toOffer(row)
@@ -175,7 +175,7 @@ export async function createOffer(
   const row = { ...fields, packageQuantity: quantityText(fields.packageQuantity) }
   await requireNewPackage(farm, row)
   const { id } = await farm.offers.insert(row)
-  const day = date ?? today(farm.now)
+  const day = date ?? farm.today
   if (price !== undefined) await putPrice(farm, id, { date: day, price })
   const offer = await getOffer(farm, id, day)
   requirePlausible(offer)
