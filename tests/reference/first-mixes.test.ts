@@ -2,6 +2,8 @@ import type { FormulationInput, Limit, NutrientId, Requirement, SolverFeed, Stag
 import {
   availableStages,
   ceilingLimits,
+  defaultSubstitution,
+  fibreCapIntake,
   firstMixLimits,
   lookUpRequirement,
   solveMix,
@@ -111,4 +113,68 @@ describe('first mixes where minerals and by-products cost next to nothing', () =
     const open = await firstBatch(stage, lookUpRequirement(tables, animalOf(stage))!, false)
     expect(open!.share((of) => of.class === 'mineral')).toBeGreaterThan(0.05)
   })
+})
+
+describe('first mixes beside the hays of the book', () => {
+  const twins = {
+    species: 'sheep',
+    class: 'ewe',
+    stage: 'latePregnancy',
+    bodyWeightKg: 70,
+    litter: 2,
+  } as const
+  const stage = stages.find(({ class: of, stage: name }) => of === twins.class && name === twins.stage)!
+
+  /** The first mix of ewes carrying twins beside a hay eaten freely. */
+  async function besideHay(hayKey: string) {
+    const hay = feeds.find(({ bookKey }) => bookKey === hayKey)!
+    const chosen = (suggestedFeeds(defaults, stage)?.feeds ?? []).map((key) =>
+      feeds.find(({ bookKey }) => bookKey === key)!,
+    )
+    const requirement = lookUpRequirement(tables, twins)!
+    const fibre = hay.values.neutralDetergentFiber?.value
+    const alone =
+      fibreCapIntake(defaults, twins.bodyWeightKg, stage.phase, fibre) ?? requirement.intakeDryMatterKg
+    const limits = firstMixLimits(defaults, stage, requirement, {
+      basis: 'besideForage',
+      feeds: [...chosen, hay],
+      baseIntakeKg: alone,
+    })
+    const { input } = mix('besideForage')
+      .with(...chosen.map(({ bookKey: _, ...solverFeed }) => solverFeed))
+      .beside(hay, {
+        dryMatterKg: alone,
+        substitutionRate: defaultSubstitution(defaults, stage.phase, fibre).value,
+      })
+      .limit(...limits)
+      .assume(highs)
+      .group({ species: 'sheep', intakeDryMatterKg: requirement.intakeDryMatterKg })
+    return solveMix(input)
+  }
+
+  it.each([
+    'alfalfa-hay-early-bloom',
+    'alfalfa-hay-mature',
+    'red-clover-hay',
+    'orchardgrass-hay-early-bloom',
+    'timothy-hay-early-bloom',
+    'timothy-hay-full-bloom',
+    'oat-hay',
+    'grass-hay-mixed',
+  ])('feed ewes with twins beside %s', async (hay) => {
+    expect((await besideHay(hay)).status).toBe('optimal')
+  })
+
+  it.each(['wheat-straw', 'bermudagrass-hay-coastal'])(
+    'refuse %s, which fills ewes with twins before it feeds them, and say what would have to give',
+    async (hay) => {
+      const answer = await besideHay(hay)
+      expect(answer.status).toBe('infeasible')
+      if (answer.status !== 'infeasible') return
+      expect(answer.conflict.map(({ limitId }) => limitId)).toEqual(
+        expect.arrayContaining(['energy', 'forageShare']),
+      )
+      expect(answer.proposals.length).toBeGreaterThan(0)
+    },
+  )
 })

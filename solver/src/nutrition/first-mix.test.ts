@@ -65,7 +65,7 @@ describe('firstMixLimits', () => {
     })
     expect(rows.calciumToPhosphorus).toMatchObject({ min: 1.5 })
     expect(rows.calciumToPhosphorus?.max).toBeUndefined()
-    expect(rows.forageShare).toMatchObject({ min: 0.5, within: 'diet', measure: 'shareOfDryMatter' })
+    expect(rows.forageShare).toMatchObject({ min: 0.4, within: 'diet', measure: 'shareOfDryMatter' })
     expect(rows.fat).toMatchObject({ max: 60, measure: 'perKgDryMatter' })
     expect(rows.intake).toMatchObject({ min: 1.5, max: 2 })
     for (const limit of limits) expect(limit.source, limit.id).not.toBe('')
@@ -129,11 +129,12 @@ describe('firstMixLimits', () => {
     expect(rows.calciumToPhosphorus).toBeDefined()
   })
 
-  it('caps the intake beside hay at the table, or a fifth above hay that fills the animal by itself', () => {
+  it('caps the intake beside hay at the table, or a fifth above what is eaten of the hay alone', () => {
     const beside = (baseIntakeKg: number) =>
       byId(firstMixLimits(defaults, ewes, requirement, { basis: 'besideForage', baseIntakeKg })).intake
     expect(beside(1.4)).toMatchObject({ max: 2 })
     expect(beside(1.4)?.min).toBeUndefined()
+    expect(beside(1.9)).toMatchObject({ max: 1.9 * 1.2, status: 'practice' })
     expect(beside(2.1)).toMatchObject({ max: 2.1 * 1.2, status: 'practice' })
     expect(beside(2.1)?.min).toBeUndefined()
   })

@@ -170,8 +170,8 @@ function concentrationMax(id: string, nutrient: NutrientId, figure: DefaultFigur
 }
 
 /**
- * What the animal eats in all. Beside hay or pasture there is no lower end; where the forage alone fills it beyond the
- * table's intake, it eats at most a fifth more with a supplement, which gives way to forage only in part.
+ * What the animal eats in all. Beside hay or pasture there is no lower end, and the upper one is the table's intake, or a
+ * fifth more than what it eats of the forage alone where that is higher: a supplement displaces good forage only in part.
  */
 function intakeWindow(defaults: FirstMixDefaults, requirement: Requirement, options: FirstMixOptions): Limit {
   const most = requirement.intakeDryMatterKg
@@ -179,7 +179,8 @@ function intakeWindow(defaults: FirstMixDefaults, requirement: Requirement, opti
   if (options.basis === 'besideForage') {
     const { baseIntakeKg = 0 } = options
     const over = defaults.intakeOverForage
-    if (baseIntakeKg >= most) return { ...window, max: baseIntakeKg * over.value, ...origin(over) }
+    const withSupplement = baseIntakeKg * over.value
+    if (withSupplement > most) return { ...window, max: withSupplement, ...origin(over) }
     return { ...window, source: requirement.source, status: requirement.status }
   }
   const least = defaults.intakeMinShareOfTable
