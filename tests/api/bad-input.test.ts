@@ -43,6 +43,8 @@ const wrongBodies: { name: string; text: string; status?: number; type?: string 
     text: '{"draft":"x","animal":"y","values":"z","mapping":1}',
     status: 400,
   },
+  { name: 'half of a letter', text: '{"name":"a\\ud800b"}', status: 400 },
+  { name: 'half of a letter in a key', text: '{"a\\udc00":1}', status: 400 },
   { name: 'another type', text: 'name=x', status: 415, type: 'application/x-www-form-urlencoded' },
   { name: 'no JSON', text: '<name/>', status: 415, type: 'text/xml' },
   { name: 'another character set', text: '{}', status: 415, type: 'application/json; charset=latin-9' },

@@ -3,9 +3,14 @@ import { AppError } from '../errors'
 
 const usualLimit = 1_000_000
 
-/** Keys that reach behind an object are refused before anything copies them. */
-function refusePrototypeKeys(this: unknown, key: string, value: unknown): unknown {
+/** Half of a pair of code units is no letter: no database keeps it, and no hash can be computed over it alike. */
+const halfLetter = /\p{Surrogate}/u
+
+/** Keys that reach behind an object, and texts that are none, are refused before anything copies them. */
+function refuseUnsafe(this: unknown, key: string, value: unknown): unknown {
   if (key === '__proto__') throw new SyntaxError('a key that is not allowed')
+  if (halfLetter.test(key) || (typeof value === 'string' && halfLetter.test(value)))
+    throw new SyntaxError('a text that is not well formed')
   return value
 }
 
@@ -25,7 +30,7 @@ export function jsonBody(limit = usualLimit): RequestHandler[] {
       inflate: false,
       strict: true,
       type: ['application/json', 'application/*+json'],
-      reviver: refusePrototypeKeys,
+      reviver: refuseUnsafe,
     }),
   ]
 }
