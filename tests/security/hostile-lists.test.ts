@@ -1,4 +1,4 @@
-import type { ImportPreview } from '@maslin/shared'
+import type { ImportPreview, PriceImport } from '@maslin/shared'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { startTestApp, type TestApp } from '../support/app'
 import { farmApi, type FarmApi } from '../support/farmApi'
@@ -65,4 +65,17 @@ describe('names that the database holds for equal', () => {
     const { items } = (await api.get('/suppliers')).body as { items: { name: string }[] }
     expect(items.map(({ name }) => name)).toEqual(['Sørlie Mill', 'Strauss'])
   })
+})
+
+it('answers no more left-out rows at once than one list may have', async () => {
+  const wrong = 'Unknown feed,Mill,50 lb,10,2026-01-02\n'.repeat(9000)
+  const fileNames = ['first.csv', 'second.csv', 'third.csv']
+  for (const [at, fileName] of fileNames.entries()) {
+    const text = `${heading}${wrong}Barley grain,Long Mill,50 lb,${at + 1},2026-02-02\n`
+    const { mapping } = (await api.post('/price-imports/preview', { text })).body as ImportPreview
+    const applied = api.post('/price-imports', { text, mapping, fileName })
+    expect((await applied.set('Idempotency-Key', `long-list-${at}`)).status).toBe(201)
+  }
+  const { items } = (await api.get('/price-imports')).body as { items: PriceImport[] }
+  expect(items.map(({ fileName }) => fileName)).toEqual(['third.csv', 'second.csv'])
 })

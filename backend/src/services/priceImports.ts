@@ -1,4 +1,10 @@
-import type { ImportMapping, ImportPreview, importPreviewRequestSchema, PriceImport } from '@maslin/shared'
+import {
+  MAX_IMPORT_ROWS,
+  type ImportMapping,
+  type ImportPreview,
+  type importPreviewRequestSchema,
+  type PriceImport,
+} from '@maslin/shared'
 import canonicalize from 'canonicalize'
 import { createHash } from 'node:crypto'
 import type { z } from 'zod'
@@ -87,9 +93,16 @@ export async function applyImport(
   return withName(farm, row)
 }
 
-/** The latest lists applied, newest first. */
+/** The latest lists applied, newest first: as many as leave out no more rows together than one list may have. */
 export async function listImports(farm: FarmRepositories): Promise<PriceImport[]> {
-  const rows = await farm.priceImports.list({}, { orderBy: [['id', 'DESC']], limit: listed })
+  const latest = await farm.priceImports.list(
+    {},
+    { columns: ['id', 'counts'], orderBy: [['id', 'DESC']], limit: listed },
+  )
+  let leftOut = 0
+  const shown = latest.filter(({ counts }) => (leftOut += counts.error + counts.leftOut) <= MAX_IMPORT_ROWS)
+  const ids = shown.map(({ id }) => id)
+  const rows = await farm.priceImports.list({ id: ids }, { orderBy: [['id', 'DESC']] })
   const people = await farm.people.byIds(rows.map((row) => row.userId))
   const names = new Map(people.map((person) => [person.id, person.name]))
   return rows.map((row) => toPriceImport(row, names.get(row.userId) ?? ''))
