@@ -77,11 +77,11 @@ export async function replaceMix(
 /** Scenarios saved from the mix stay; they only no longer name it. Throws AppError `stale_version`, `not_found`. */
 export async function deleteMix(farm: FarmRepositories, id: string, version: number): Promise<void> {
   const before = await getMix(farm, id)
-  for (const scenario of await farm.scenarios.list({ mixId: id })) {
-    await farm.scenarios.overwrite(scenario.id, { mixId: null })
-  }
+  const scenarios = await farm.scenarios.list({ mixId: id }, { columns: ['id'] })
+  for (const scenario of scenarios) await farm.scenarios.overwrite(scenario.id, { mixId: null })
   await farm.mixes.remove(id, version)
-  await farm.audit.record({ action: 'delete', entity: 'mix', entityId: id, before })
+  const namedBy = scenarios.map((scenario) => scenario.id)
+  await farm.audit.record({ action: 'delete', entity: 'mix', entityId: id, before: { ...before, namedBy } })
 }
 
 const mixColumns = (draft: MixDraft) => ({
