@@ -40,7 +40,12 @@ export function useQuantities() {
   const weightUnit = computed<'lb' | 'kg'>(() => (units.value === 'us' ? 'lb' : 'kg'))
 
   function number(value: number, options: Intl.NumberFormatOptions = {}): string {
-    return new Intl.NumberFormat(locale.value, { maximumFractionDigits: 2, ...options }).format(value)
+    return new Intl.NumberFormat(locale.value, {
+      maximumFractionDigits: 2,
+      // Nothing has no sign, also where a small negative figure is rounded to it.
+      signDisplay: 'negative',
+      ...options,
+    }).format(value)
   }
 
   /** Three significant digits, whole numbers from 1,000 on. */
@@ -74,6 +79,7 @@ export function useQuantities() {
       style: 'currency',
       currency: currency.value,
       currencyDisplay: 'narrowSymbol',
+      signDisplay: 'negative',
       minimumFractionDigits: 2,
       maximumFractionDigits: digits,
       ...options,

@@ -187,6 +187,7 @@ export default {
     saved: 'Mix saved.',
     allSaved: 'Saved',
     saveScenario: 'Save scenario',
+    reviewNeedsMix: 'Only a mix that is possible can be reviewed.',
     askReview: 'Ask for review',
     tryOnly: 'You may try values here. Saving is for an owner or a manager.',
     readOnly: 'You can read this mix. Trying and saving values is for others on the farm.',
