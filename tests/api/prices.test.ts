@@ -260,3 +260,12 @@ describe('today', () => {
     },
   )
 })
+
+it.each(['0026-12-01', '0000-01-01', '2126-12-01'])('no price is of %s', async (date) => {
+  const { feedId, supplierId } = await feedAndSupplier()
+  const offer = await api.makeOffer({ feedId, supplierId })
+  const refused = { status: 400, errors: [{ path: 'date', code: 'out_of_range' }] }
+  expect((await api.post(`/offers/${offer.id}/prices`, { date, price: '1' })).body).toMatchObject(refused)
+  const another = { feedId, supplierId, packageQuantity: 1, packageUnit: 'kg', price: '1', date }
+  expect((await api.post('/offers', another)).body).toMatchObject(refused)
+})
