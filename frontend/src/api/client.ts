@@ -1,4 +1,5 @@
 import { pageOf, problemSchema, type FieldProblem, type ProblemCode } from '@maslin/shared'
+import { today } from '../composables/today'
 import type { z } from 'zod'
 import { isRenewalDue, refreshSession } from './refresh'
 
@@ -68,7 +69,8 @@ function urlOf(path: string, query: RequestOptions['query']): string {
 }
 
 async function send(method: Method, path: string, options: RequestOptions): Promise<Response> {
-  const headers: Record<string, string> = { Accept: 'application/json' }
+  // What is dated today must hold today, whatever day it is where the server stands.
+  const headers: Record<string, string> = { Accept: 'application/json', 'Client-Day': today() }
   if (options.body !== undefined) headers['Content-Type'] = 'application/json'
   if (options.version !== undefined) headers['If-Match'] = `"${options.version}"`
   if (options.idempotencyKey !== undefined) headers['Idempotency-Key'] = options.idempotencyKey

@@ -5,7 +5,8 @@ import { defineComponent, h } from 'vue'
 import { mount } from '@vue/test-utils'
 import { i18n } from '../i18n'
 import { useSessionStore } from '../stores/session'
-import { today, useQuantities } from './useQuantities'
+import { today } from './today'
+import { useQuantities } from './useQuantities'
 
 function quantitiesFor(units: UnitSystem, currency = 'USD') {
   const session = useSessionStore()

@@ -55,6 +55,8 @@ export default {
     duplicate_limit: 'The same limit stands here twice.',
     no_bound: 'Give a least or a most.',
     min_above_max: 'The least is above the most.',
+    out_of_range: 'Too early or too late.',
+    cost_too_large: 'The cost is too large to be kept. Look at the prices.',
     money: 'Not an amount of money.',
     currency: 'Three capital letters, such as USD.',
   },

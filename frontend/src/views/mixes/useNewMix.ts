@@ -15,7 +15,7 @@ import { createSupplier } from '../../api/suppliers'
 import { useFarm } from '../../composables/useFarm'
 import { useFarmData } from '../../composables/useFarmData'
 import type { PackageSize } from '../../composables/priceText'
-import { today } from '../../composables/useQuantities'
+import { today } from '../../composables/today'
 import { farmKey } from '../../queries'
 import { perKgOf } from './model/prices'
 
