@@ -41,7 +41,10 @@ export default tseslint.config(
   },
   {
     files: ['shared/src/**'],
-    rules: forbidImports([['@maslin/*', '**/solver/**', '**/backend/**', '**/frontend/**'], 'shared imports no other layer.']),
+    rules: forbidImports([
+      ['@maslin/*', '**/solver/**', '**/backend/**', '**/frontend/**'],
+      'shared imports no other layer.',
+    ]),
   },
   {
     files: ['solver/src/**'],
@@ -52,7 +55,10 @@ export default tseslint.config(
   },
   {
     files: ['solver/src/lp/**'],
-    rules: forbidImports([['**/nutrition/**', '**/formulation/**', '**/analysis/**', 'node:*'], 'lp knows nothing of feed.']),
+    rules: forbidImports([
+      ['**/nutrition/**', '**/formulation/**', '**/analysis/**', 'node:*'],
+      'lp knows nothing of feed.',
+    ]),
   },
   {
     files: ['frontend/src/**'],
@@ -60,11 +66,22 @@ export default tseslint.config(
   },
   {
     files: ['backend/src/**'],
-    rules: forbidImports([['@maslin/frontend*', '**/frontend/**'], 'backend imports shared and solver only.'], models),
+    rules: forbidImports(
+      [['@maslin/frontend*', '**/frontend/**'], 'backend imports shared and solver only.'],
+      models,
+    ),
   },
   {
-    files: ['backend/src/models/**', 'backend/src/repositories/**', 'backend/src/database/**', 'backend/src/migrations/**'],
-    rules: forbidImports([['@maslin/frontend*', '**/frontend/**'], 'backend imports shared and solver only.']),
+    files: [
+      'backend/src/models/**',
+      'backend/src/repositories/**',
+      'backend/src/database/**',
+      'backend/src/migrations/**',
+    ],
+    rules: forbidImports([
+      ['@maslin/frontend*', '**/frontend/**'],
+      'backend imports shared and solver only.',
+    ]),
   },
   prettier,
 )
