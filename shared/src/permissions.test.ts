@@ -9,7 +9,7 @@ describe('permissions', () => {
 
   it.each([
     { role: 'hand', action: 'prices.write' },
-    { role: 'hand', action: 'mixes.solve' },
+    { role: 'hand', action: 'mixes.try' },
     { role: 'advisor', action: 'mixes.write' },
     { role: 'manager', action: 'members.manage' },
     { role: 'manager', action: 'scenarios.review' },

@@ -18,6 +18,7 @@ export const actions = [
   'mixes.read',
   'mixes.write',
   'mixes.solve',
+  'mixes.try',
   'scenarios.read',
   'scenarios.write',
   'scenarios.submit',
@@ -42,8 +43,10 @@ const allowed: Record<Action, readonly Role[]> = {
   'groups.write': keepers,
   'mixes.read': everyone,
   'mixes.write': keepers,
-  // An advisor tries values out on the bench without being able to save them.
-  'mixes.solve': ['owner', 'manager', 'advisor'],
+  // Solving saves nothing, and the hand who mixes must see what goes in.
+  'mixes.solve': everyone,
+  // Trying other values on the bench. An advisor may, without being able to save them.
+  'mixes.try': ['owner', 'manager', 'advisor'],
   'scenarios.read': everyone,
   'scenarios.write': keepers,
   'scenarios.submit': keepers,

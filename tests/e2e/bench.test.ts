@@ -289,6 +289,7 @@ describe('what a role may do on the bench', () => {
     await page.getByRole('link', { name: mixName }).click()
     await page.getByText('You can read this mix.').waitFor()
     await page.getByRole('heading', { level: 2, name: /^What goes in/ }).waitFor()
+    expect(await costShown(page)).toMatch(/\d/)
     const names = await page.getByRole('main').getByRole('button').allInnerTexts()
     expect(names.filter((name) => /save|ask for review|undo|redo|add a|change/i.test(name))).toEqual([])
     for (const name of [

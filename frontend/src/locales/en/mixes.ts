@@ -191,7 +191,7 @@ export default {
     askReview: 'Ask for review',
     tryOnly: 'You may try values here. Saving is for an owner or a manager.',
     readOnly: 'You can read this mix. Trying and saving values is for others on the farm.',
-    toScenario: 'See its last scenario, {name}, with the answer.',
+    toScenario: 'See its last scenario, {name}.',
     leaveTitle: 'Leave without saving?',
     leaveText: 'Your changes to this mix are not saved. If you leave now they are lost.',
     leave: 'Leave without saving',
