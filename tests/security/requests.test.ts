@@ -13,7 +13,10 @@ const log: string[] = []
 beforeAll(async () => {
   frontend = mkdtempSync(join(tmpdir(), 'maslin-pages-'))
   mkdirSync(join(frontend, 'assets'))
-  writeFileSync(join(frontend, 'index.html'), '<!doctype html><title>Maslin</title>')
+  writeFileSync(
+    join(frontend, 'index.html'),
+    '<!doctype html><meta name="style-nonce" content="__STYLE_NONCE__"><title>Maslin</title>',
+  )
   writeFileSync(join(frontend, 'assets', 'index-4f3a2b1c.js'), 'export {}')
   writeFileSync(join(frontend, 'assets', 'engine-9a8b7c6d.wasm'), Buffer.alloc(4096))
   writeFileSync(join(frontend, 'assets', 'large-1b2c3d4e.js'), `export default '${'oats '.repeat(2000)}'`)
@@ -82,6 +85,19 @@ describe('headers', () => {
     expect(headers).toMatchObject({ 'x-content-type-options': 'nosniff', 'referrer-policy': 'same-origin' })
     expect(headers).not.toHaveProperty('x-powered-by')
     expect(headers).not.toHaveProperty('strict-transport-security')
+  })
+
+  it('let in the one style that the page itself makes, by a word that is new each time', async () => {
+    const asked = async () => {
+      const { headers, text } = await visit(t).get('/sign-in')
+      const allowed = /style-src 'self' 'nonce-([^']+)'(;|$)/.exec(
+        String(headers['content-security-policy']),
+      )?.[1]
+      expect(allowed).toBeDefined()
+      expect(text).toContain(`<meta name="style-nonce" content="${allowed}">`)
+      return allowed
+    }
+    expect(await asked()).not.toBe(await asked())
   })
 
   it('keep answers out of caches', async () => {

@@ -1,10 +1,22 @@
 import helmet from 'helmet'
-import type { RequestHandler } from 'express'
+import { randomBytes } from 'node:crypto'
+import type { RequestHandler, Response } from 'express'
+
+const nonces = new WeakMap<object, string>()
+
+/** The word by which this answer's policy knows the one style element that its page makes. */
+export function styleNonceOf(response: Response): string {
+  const known = nonces.get(response)
+  if (known) return known
+  const nonce = randomBytes(16).toString('base64')
+  nonces.set(response, nonce)
+  return nonce
+}
 
 /**
  * What a browser may load and do with our pages. Scripts come from here alone, none of them inline; `wasm-unsafe-eval`
- * lets the solver's WebAssembly compile and nothing else. The component library writes its theme into a style element
- * at run time, so inline styles are allowed.
+ * lets the solver's WebAssembly compile and nothing else. The component library writes its theme into a style element at
+ * run time: it is told the answer's nonce, and no other inline style counts.
  * @param secure served over TLS: browsers are told to stay with https
  */
 export function securityHeaders(secure: boolean): RequestHandler {
@@ -15,7 +27,7 @@ export function securityHeaders(secure: boolean): RequestHandler {
         defaultSrc: ["'self'"],
         scriptSrc: ["'self'", "'wasm-unsafe-eval'"],
         scriptSrcAttr: ["'none'"],
-        styleSrc: ["'self'", "'unsafe-inline'"],
+        styleSrc: ["'self'", (_request, response) => `'nonce-${styleNonceOf(response as Response)}'`],
         imgSrc: ["'self'", 'data:', 'blob:'],
         fontSrc: ["'self'", 'data:'],
         connectSrc: ["'self'"],

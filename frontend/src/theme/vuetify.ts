@@ -39,8 +39,12 @@ function themeOf(tokens: Record<keyof typeof light, string>, isDark: boolean): T
 const field = { variant: 'outlined', density: 'compact', hideDetails: 'auto' } as const
 
 /** Vuetify with our own colours, density and shapes as defaults of its components. */
+/** The content security policy lets the theme's style element in by this word, new with every page. */
+const cspNonce = document.querySelector<HTMLMetaElement>('meta[name="style-nonce"]')?.content
+
 export const vuetify = createVuetify({
   theme: {
+    ...(cspNonce ? { cspNonce } : {}),
     defaultTheme: 'system',
     themes: { light: themeOf(light, false), dark: themeOf(dark, true) },
   },
