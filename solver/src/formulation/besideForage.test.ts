@@ -116,6 +116,24 @@ describe('a supplement beside hay', () => {
     expect(value('rate')).toBeCloseTo(mixDry / 0.88, 9)
   })
 
+  it('counts the copper of the hay in the diet of sheep, and looks at what the hay itself is made of', async () => {
+    const rich = { ...hay, values: { ...hay.values, copper: { value: 20, status: 'typed' as const } } }
+    const poor = { ...grain, values: { ...grain.values, copper: { value: 3, status: 'typed' as const } } }
+    const diet = (forage: typeof hay) =>
+      mix('besideForage').with(poor).beside(forage, { dryMatterKg: 1.4, substitutionRate: 0.6 }).limit(need)
+    const answer = await mixed(diet(rich))
+    const [mixDry, hayDry] = [answer.totals.kgDryMatter, answer.baseDiet[0]!.kgDryMatter]
+    const whole = (3 * mixDry + 20 * hayDry) / (mixDry + hayDry)
+    expect(whole).toBeGreaterThan(10)
+    expect(answer.cautions).toMatchObject([
+      { code: 'copperWarn', params: { totalPerKg: expect.closeTo(whole, 9) } },
+    ])
+    const { cautions } = await mixed(diet({ ...rich, ruminantOrigin: 'yes' }))
+    expect(cautions).toContainEqual(
+      expect.objectContaining({ code: 'ruminantOriginInBaseDiet', level: 'block', feedIds: [hay.id] }),
+    )
+  })
+
   it('adds rations that are fed anyway and names those whose price is not known', async () => {
     const ration = feed('ration', 0.9, undefined, { totalDigestibleNutrients: 600 })
     const answer = await mixed(beside(0).ration(ration, { dryMatterKg: 0.2 }))

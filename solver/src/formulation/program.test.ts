@@ -214,6 +214,19 @@ describe('feeds that may not go in', () => {
     expect(await levelAt(0.4)).toEqual(['copperWarn'])
   })
 
+  // Greatest safe copper for sheep and where a look is due: the figures and their sources stand beside the thresholds.
+  it.each([
+    { copper: 9.9, code: 'copperLow', limit: 10 },
+    { copper: 10.1, code: 'copperWarn', limit: 10 },
+    { copper: 14.9, code: 'copperWarn', limit: 10 },
+    { copper: 15.1, code: 'copperAcknowledge', limit: 15 },
+  ])('says $code of book values of $copper mg copper per kg of dry matter for sheep', async (given) => {
+    const { cautions } = await mixed(mix('batch').with(feed('natural', 0.9, 0.1, { copper: given.copper })))
+    expect(cautions).toMatchObject([
+      { code: given.code, params: { totalPerKg: expect.closeTo(given.copper, 9), limit: given.limit } },
+    ])
+  })
+
   it('warns of natural copper in a diet for sheep and shows how much of it is assumed', async () => {
     const rich = feed('rich', 0.9, 0.2, { copper: 18 })
     const unknown = feed('unknown', 0.9, 0.1)

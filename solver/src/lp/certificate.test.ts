@@ -150,6 +150,67 @@ describe('the certificate of an optimum', () => {
     expect(certificate.failures).toContain('gap')
   })
 
+  it('rejects prices under which a feed would earn without end, though all numbers follow from one another', () => {
+    const certificate = corrupted((outcome) => {
+      outcome.rows[binding()]!.dual *= 1.5
+      outcome.columns.forEach((column, j) => {
+        column.reducedCost = lp.rows.reduce(
+          (rest, { entries }, i) =>
+            rest - outcome.rows[i]!.dual * (entries.find(([other]) => other === j)?.[1] ?? 0),
+          lp.columns[j]!.cost,
+        )
+      })
+    })
+    expect(certificate.consistency).toBeLessThan(1e-12)
+    expect(certificate.failures).toContain('dualViolation')
+  })
+
+  it('rejects an amount off its bound though its reduced cost is not zero', () => {
+    const capped: LinearProgram = {
+      columns: [
+        { id: 'cheap', cost: 1, lower: 0, upper: 6 },
+        { id: 'dear', cost: 2, lower: 0, upper: Infinity },
+      ],
+      rows: [
+        {
+          id: 'total',
+          lower: 10,
+          upper: 10,
+          entries: [
+            [0, 1],
+            [1, 1],
+          ],
+        },
+      ],
+    }
+    const answerWith = (cheap: number): OptimalOutcome => ({
+      ...honest,
+      objective: cheap + 2 * (10 - cheap),
+      columns: [
+        { value: cheap, reducedCost: -1, basis: 'upper' },
+        { value: 10 - cheap, reducedCost: 0, basis: 'basic' },
+      ],
+      rows: [{ activity: 10, dual: 2, basis: 'lower' }],
+    })
+    expect(checkOutcome(capped, answerWith(6)).failures).toEqual([])
+    expect(checkOutcome(capped, answerWith(5)).failures).toEqual(['complementarity', 'gap'])
+  })
+
+  it('measures a row against its own terms: a trace mineral of a millionth may not be short by a tenth', () => {
+    const trace: LinearProgram = {
+      columns: [{ id: 'premix', cost: 1, lower: 0, upper: Infinity }],
+      rows: [{ id: 'selenium', lower: 1e-9, upper: Infinity, entries: [[0, 1e-9]] }],
+    }
+    const certificate = checkOutcome(trace, {
+      ...honest,
+      objective: 0.9,
+      columns: [{ value: 0.9, reducedCost: 0, basis: 'basic' }],
+      rows: [{ activity: 0.9e-9, dual: 1e9, basis: 'lower' }],
+    })
+    expect(certificate.failures).toContain('rowViolation')
+    expect(certificate.rowViolation).toBeCloseTo(0.1 / 1.9, 9)
+  })
+
   it('rejects an answer to another program', () => {
     const changed = {
       ...lp,
@@ -210,6 +271,15 @@ describe('the certificate of an impossible program', () => {
       rows: program.rows.map((row) => (row.id === 'NA_max' ? { ...row, upper: 50_000 } : row)),
     }
     expect(checkOutcome(feasible, honest).valid).toBe(false)
+  })
+
+  it('counts what a column must bring at least, and rejects the proof where that is less', () => {
+    const atLeast = (lower: number): LinearProgram => ({
+      columns: [{ id: 'hay', cost: 1, lower, upper: Infinity }],
+      rows: [{ id: 'most', lower: -Infinity, upper: 5, entries: [[0, 1]] }],
+    })
+    expect(checkOutcome(atLeast(6), { ...honest, ray: [-1] })).toMatchObject({ valid: true, proof: 1 / 11 })
+    expect(checkOutcome(atLeast(4), { ...honest, ray: [-1] }).failures).toEqual(['proof'])
   })
 
   it('rejects a ray that needs a column without an upper bound', () => {
