@@ -37,26 +37,29 @@ describe('a supplement beside hay', () => {
     })
   })
 
-  it('leaves the hay as it is for minerals, which fill no rumen', async () => {
-    const limestone = feed(
-      'limestone',
-      1,
-      0.1,
-      { totalDigestibleNutrients: 0, calcium: 380 },
-      { class: 'mineral' },
-    )
-    const calcium = {
-      id: 'ca',
-      kind: 'nutrient',
-      nutrient: 'calcium',
-      measure: 'perHeadDay',
-      min: 8,
-    } as const
-    const answer = await mixed(beside(0.6).with(limestone).limit(calcium))
-    const grains = answer.blend.find(({ feedId }) => feedId === grain.id)!
-    expect(answer.totals.kgDryMatter).toBeGreaterThan(grains.kgDryMatter)
-    expect(answer.baseDiet[0]!.kgDryMatter).toBeCloseTo(1.4 - 0.6 * grains.kgDryMatter, 9)
-  })
+  it.each(['mineral', 'premix'] as const)(
+    'leaves the hay as it is for a %s, which fills no rumen',
+    async (kind) => {
+      const limestone = feed(
+        'limestone',
+        1,
+        0.1,
+        { totalDigestibleNutrients: 0, calcium: 380 },
+        { class: kind },
+      )
+      const calcium = {
+        id: 'ca',
+        kind: 'nutrient',
+        nutrient: 'calcium',
+        measure: 'perHeadDay',
+        min: 8,
+      } as const
+      const answer = await mixed(beside(0.6).with(limestone).limit(calcium))
+      const grains = answer.blend.find(({ feedId }) => feedId === grain.id)!
+      expect(answer.totals.kgDryMatter).toBeGreaterThan(grains.kgDryMatter)
+      expect(answer.baseDiet[0]!.kgDryMatter).toBeCloseTo(1.4 - 0.6 * grains.kgDryMatter, 9)
+    },
+  )
 
   it('leaves the animal 15 % short of its need where 0.57 kg is fed in spite of that', () => {
     const fed = (1240 - 540 * 1.4) / 850

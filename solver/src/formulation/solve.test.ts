@@ -114,6 +114,15 @@ describe('several mixes that cost the same', () => {
     expect(small.proof.engine).toBe('javascript-lp-solver')
   })
 
+  it('never give way to one that is a millionth dearer', async () => {
+    for (let i = 0; i < 12; i++) {
+      const nearly = feed(`nearly${i}`, 0.9, 0.2 * (1 + 1e-6), { crudeProtein: 120 })
+      const answer = await mixed(mix('batch').with(...twins, nearly))
+      expect(answer.blend.map(({ feedId }) => feedId)).not.toContain(nearly.id)
+      expect(Math.abs(answer.cost.least / (200 / 0.9) - 1)).toBeLessThan(1e-10)
+    }
+  })
+
   it('have windows that end at today’s price, and buy-in prices that are today’s', async () => {
     const answer = await mixed(mix('batch').with(...twins))
     expect(answer.blend[0]!.priceWindow).toEqual({ high: expect.closeTo(0.2, 9) })
