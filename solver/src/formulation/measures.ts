@@ -36,9 +36,8 @@ export function batchScale(input: FormulationInput): number {
   return input.basis === 'batch' ? input.batchDryMatterKg / REFERENCE_DRY_MATTER_KG : 1
 }
 
-/** Whether a base-diet or mix feed is one the limit is about. The base diet counts where the whole diet is meant. */
-function selects(of: FeedSelection, source: Source, part: Part): boolean {
-  if (source.kind !== 'mix' && part === 'mix') return false
+/** Whether a feed of the mix or the base diet is one the limit is about. */
+function selects(of: FeedSelection, source: Source): boolean {
   switch (of.by) {
     case 'feeds':
       return of.feedIds.includes(source.feed.id)
@@ -81,7 +80,7 @@ export function measureOf(limit: Limit, side: BoundSide, context: MeasureContext
       }
     case 'feeds': {
       const part = limit.within
-      const selected = (source: Source): number => (selects(limit.of, source, part) ? 1 : 0)
+      const selected = (source: Source): number => (selects(limit.of, source) ? 1 : 0)
       const dry = formOver(diet, part, selected)
       const asFed = asFedForm(diet, part, selected)
       if (limit.measure === 'shareOfDryMatter') return { numerator: dry, denominator: dryMatterOf(part) }
