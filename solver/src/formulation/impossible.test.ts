@@ -134,6 +134,20 @@ describe('a mix that is impossible', () => {
     expect(await solveMix(atLeast(150, false).input)).toMatchObject({ status: 'infeasible', proposals: [] })
   })
 
+  it('still warns of what the animals eat beside it', async () => {
+    const bone = feed('bone', 0.9, 0.1, { crudeProtein: 400 }, { ruminantOrigin: 'yes', forage: true })
+    const answer = await solveMix(
+      mix('besideForage')
+        .with(hay)
+        .beside(bone, { dryMatterKg: 1 })
+        .limit({ id: 'rate', kind: 'rate', max: 1 }, { id: 'intake', kind: 'intake', min: 5 }).input,
+    )
+    expect(answer).toMatchObject({
+      status: 'infeasible',
+      cautions: [{ code: 'ruminantOriginInBaseDiet', level: 'block', feedIds: [bone.id] }],
+    })
+  })
+
   it('names a limit on feeds that are not in the mix at all', async () => {
     const absent = { by: 'feeds', feedIds: ['00000000-0000-4000-8000-000000000000'] } as const
     const answer = await solveMix(
