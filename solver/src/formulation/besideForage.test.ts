@@ -61,6 +61,18 @@ describe('a supplement beside hay', () => {
     },
   )
 
+  it.each([0, 0.6])(
+    'takes the place of all free-choice hay as a whole diet (substitution %d)',
+    async (rate) => {
+      const answer = await mixed(
+        mix('perHead').with(grain).beside(hay, { dryMatterKg: 1.4, substitutionRate: rate }).limit(need),
+      )
+      expect(answer.baseDiet).toEqual([])
+      expect(answer.totals.kgDryMatter).toBeCloseTo(1240 / 850, 9)
+      expect(answer.cost.least).toBeCloseTo(answer.cost.mix, 12)
+    },
+  )
+
   it('leaves the animal 15 % short of its need where 0.57 kg is fed in spite of that', () => {
     const fed = (1240 - 540 * 1.4) / 850
     const brought = 850 * fed + 540 * (1.4 - 0.6 * fed)
