@@ -184,6 +184,21 @@ describe('a limit that differs for more and less', () => {
     expect(answer.limits[0]!.lower!.perUnit).toBeCloseTo((-1000 * (0.4 - 0.2)) / 0.9 / 200, 9)
   })
 
+  it('is tight, and costs nothing, where the only feed there is just meets it', async () => {
+    const answer = await mixed(
+      mix('batch')
+        .with(grain)
+        .limit({ id: 'cp', kind: 'nutrient', nutrient: 'crudeProtein', measure: 'perKgDryMatter', min: 100 }),
+    )
+    expect(answer.limits[0]).toMatchObject({
+      value: 100,
+      state: 'tight',
+      bindingSide: 'min',
+      raise: { impossible: true },
+      lower: { perUnit: 0, impossible: false },
+    })
+  })
+
   it('counts what raising a minimum of nothing costs', async () => {
     const answer = await mixed(
       mix('batch')
