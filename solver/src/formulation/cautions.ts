@@ -3,6 +3,9 @@ import { animalRules, copperCaution, type FirstMixDefaults } from '../nutrition'
 import { eatenOf, knowledgeOf } from './diet'
 import type { Formulation } from './program'
 
+/** Rounding that is no shortage. */
+const NEARLY = 1e-3
+
 /** mg copper per kg of the whole diet's dry matter, sheep. */
 const copperThresholds: FirstMixDefaults['copper'] = {
   warnAbove: {
@@ -37,6 +40,37 @@ export function rulesOf(input: FormulationInput): { excluded: LeftOut[]; caution
   return { excluded, cautions }
 }
 
+/** Needs that a mix is made to meet; the others (vitamins, TDN beside ME) have no rows in a first mix. */
+const coreNeeds = ['metabolizableEnergy', 'crudeProtein', 'calcium', 'phosphorus'] as const
+
+/**
+ * Warns where the diet brings less of a core need than the group's requirement, since a limit was lowered or taken off: what
+ * is cheapest then is no feed for these animals. Unknown values count as nothing, as they do in the limits.
+ */
+function belowNeedOf({ input, diet, composition }: Formulation, amounts: number[]): Caution | undefined {
+  const eaten = eatenOf(diet, 'diet', amounts)
+  const dryMatter = eaten.reduce((sum, part) => sum + part.dryMatterKg, 0)
+  if (dryMatter === 0) return undefined
+  const days = input.basis === 'batch' ? dryMatter / input.group.intakeDryMatterKg : 1
+  const short = coreNeeds.flatMap((nutrient) => {
+    const need = input.group.needs.find((one) => one.nutrient === nutrient && one.kind === 'min')
+    if (!need || need.perHeadDay <= 0) return []
+    const { total } = knowledgeOf(eaten, (feed) => composition(feed, nutrient, 'low'))
+    const share = total / days / need.perHeadDay
+    return share < 1 - NEARLY ? [{ nutrient, share, need }] : []
+  })
+  const [worst] = short.sort((a, b) => a.share - b.share)
+  if (!worst) return undefined
+  return {
+    code: 'belowNeed',
+    level: 'acknowledge',
+    params: { nutrient: worst.nutrient, share: worst.share },
+    feedIds: [],
+    source: worst.need.source,
+    status: worst.need.status,
+  }
+}
+
 /** What to warn of at an answer: the animal rules for what is in it or was kept out, and the copper of the diet. */
 export function cautionsOf(formulation: Formulation, amounts: number[]): Caution[] {
   const { input, excluded } = formulation
@@ -50,8 +84,8 @@ export function cautionsOf(formulation: Formulation, amounts: number[]): Caution
     input.feeds.filter((feed) => concerned.has(feed.id)),
     baseFeedsOf(input),
   )
-  const copper = copperOf(formulation, amounts)
-  return copper ? [...cautions, copper] : cautions
+  const found = [belowNeedOf(formulation, amounts), copperOf(formulation, amounts)]
+  return [...cautions, ...found.filter((caution) => caution !== undefined)]
 }
 
 function copperOf({ input, diet, composition }: Formulation, amounts: number[]): Caution | undefined {

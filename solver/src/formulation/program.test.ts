@@ -194,6 +194,42 @@ describe('feeds that may not go in', () => {
     expect(answer.cautions.map(({ code }) => code)).toContain('addedCopperLeftOut')
   })
 
+  it('warns where a lowered limit leaves the animals short of their need, in every basis', async () => {
+    const energy = feed('energy', 0.9, 0.2, { metabolizableEnergy: 3 })
+    const filler = feed('filler', 0.9, 0.05, { metabolizableEnergy: 1 })
+    const needs = [
+      {
+        nutrient: 'metabolizableEnergy',
+        kind: 'min',
+        perHeadDay: 4,
+        source: 'a table',
+        status: 'read',
+      } as const,
+    ]
+    const cautionsAt = async (basis: 'batch' | 'perHead', perHeadDay: number) => {
+      const limit = {
+        id: 'me',
+        kind: 'nutrient',
+        nutrient: 'metabolizableEnergy',
+        measure: 'perHeadDay',
+      } as const
+      const intake = { id: 'intake', kind: 'intake', min: 2, max: 2 } as const
+      const made = mix(basis).group({ species: 'goat', needs, intakeDryMatterKg: 2 }).with(energy, filler)
+      const { cautions } = await mixed(made.limit({ ...limit, min: perHeadDay }, intake))
+      return cautions.map(({ code, level, params }) => ({ code, level, params }))
+    }
+    for (const basis of ['batch', 'perHead'] as const) {
+      expect(await cautionsAt(basis, 4), basis).toEqual([])
+      expect(await cautionsAt(basis, 3), basis).toEqual([
+        {
+          code: 'belowNeed',
+          level: 'acknowledge',
+          params: { nutrient: 'metabolizableEnergy', share: expect.closeTo(0.75, 9) as number },
+        },
+      ])
+    }
+  })
+
   it('stops where tested lots alone bring too much copper, whatever book feeds stand beside them', async () => {
     const tested = feed('tested', 0.9, 0.1, {})
     tested.values.copper = { value: 30, status: 'laboratory' }

@@ -60,6 +60,10 @@ export default {
       title: 'Ionophore.',
       text: 'A feed with an ionophore is used. It is for the species on its label only, at the rate on its label; keep horses, donkeys and dogs away.',
     },
+    belowNeed: {
+      title: 'Less than these animals need.',
+      text: 'The diet brings {share} of the {nutrient} that the requirement asks for. The cheapest mix for lower limits is no feed for these animals.',
+    },
     copperLow: {
       title: 'Copper, sheep.',
       text: 'The diet holds {totalPerKg} mg of copper per kg of dry matter, {assumedShare} of it assumed; that is not above {limit}. No added copper may go in.',

@@ -191,7 +191,7 @@ export default {
     askReview: 'Ask for review',
     tryOnly: 'You may try values here. Saving is for an owner or a manager.',
     readOnly: 'You can read this mix. Trying and saving values is for others on the farm.',
-    toScenario: 'See its last scenario, {name}.',
+    toScenario: 'See the approved scenario, {name}.',
     leaveTitle: 'Leave without saving?',
     leaveText: 'Your changes to this mix are not saved. If you leave now they are lost.',
     leave: 'Leave without saving',
@@ -264,7 +264,7 @@ export default {
     since: 'for the group and 30 days than scenario {name} of {date}',
     sinceSame: 'for the group and 30 days as in scenario {name} of {date}',
     noScenario: 'No scenario of this mix is saved yet.',
-    unpriced: 'Without the cost of {names}: no price on this day.',
+    without: 'without {names}, which has no price on this day',
     tried: 'With tried prices: {names}.',
   },
   feeds: {

@@ -1,7 +1,7 @@
 /** How a figure came to be known. */
 export default {
   read: 'read in the source',
-  memory: 'from memory, not yet read again',
+  memory: 'from memory of the publication named, not yet compared with its page again',
   practice: 'common practice, no source',
   derived: 'worked out from other values',
   laboratory: 'laboratory report',
@@ -9,7 +9,7 @@ export default {
   invented: 'made up for the demo',
   short: {
     read: 'read',
-    memory: 'memory',
+    memory: 'from memory',
     practice: 'practice',
     derived: 'derived',
     laboratory: 'lab',

@@ -20,6 +20,18 @@ const preview: ImportPreview = {
 }
 const draft = newDraft('Item;Pack;Price\nCorn;1 bu;8,40', 'list.csv', 'UTF-8', '2026-11-24')
 
+describe('a new draft', () => {
+  const suppliers = ['Tarn Mill', 'Tarn Hollow Mill', 'Ridge']
+  it.each([
+    ['tarn-hollow-mill-new-prices.csv', 'Tarn Hollow Mill'],
+    ['Prices TARN MILL 2026.csv', 'Tarn Mill'],
+    ['prices.csv', ''],
+    ['', ''],
+  ])('of the file %j takes %j for the supplier', (file, expected) => {
+    expect(newDraft('a;b', file, 'UTF-8', '2026-11-24', suppliers).supplierName).toBe(expected)
+  })
+})
+
 describe('what is sent', () => {
   it('leaves the first reading to the API', () => {
     expect(previewRequest(draft)).toEqual({

@@ -20,8 +20,25 @@ export interface ImportDraft {
   readonly feedMatches: Readonly<Record<string, string | null>>
 }
 
-export function newDraft(text: string, fileName: string, encoding: string, day: string): ImportDraft {
-  return { fileName, text, encoding, mapping: undefined, supplierName: '', date: day, feedMatches: {} }
+/** @param suppliers names of the farm's suppliers: the list may be named after one */
+export function newDraft(
+  text: string,
+  fileName: string,
+  encoding: string,
+  day: string,
+  suppliers: readonly string[] = [],
+): ImportDraft {
+  const supplierName = supplierInFileName(fileName, suppliers)
+  return { fileName, text, encoding, mapping: undefined, supplierName, date: day, feedMatches: {} }
+}
+
+const plain = (text: string): string => text.toLowerCase().replace(/[^\p{L}\p{N}]/gu, '')
+
+/** The supplier whose name stands in the file's name, the longest where several do; empty where none does. */
+export function supplierInFileName(fileName: string, suppliers: readonly string[]): string {
+  const file = plain(fileName)
+  const named = suppliers.filter((name) => plain(name) && file.includes(plain(name)))
+  return named.sort((a, b) => b.length - a.length)[0] ?? ''
 }
 
 function common(draft: ImportDraft, mapping: ImportMapping | undefined) {

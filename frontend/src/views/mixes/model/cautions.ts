@@ -10,7 +10,9 @@ function figures(caution: Caution, words: Words): Record<string, string> {
         ? name.toLowerCase().endsWith('share')
           ? words.q.percent(value, 0)
           : words.q.significant(value)
-        : value,
+        : name === 'nutrient'
+          ? words.t(`nutrients.${value}`).toLocaleLowerCase()
+          : value,
     ]),
   )
 }
