@@ -130,6 +130,33 @@ describe('a mix that is impossible', () => {
     })
   })
 
+  it.each(['batch', 'perHead'] as const)(
+    'offers what the feeds can reach where the limit was set absurdly high, basis %s',
+    async (basis) => {
+      const grain = feed('grain', 0.9, 0.2, { metabolizableEnergy: 3 })
+      const hay = feed('hay', 0.9, 0.1, { metabolizableEnergy: 2 })
+      const answer = await solveMix(
+        mix(basis)
+          .with(grain, hay)
+          .group({ intakeDryMatterKg: 2 })
+          .limit(
+            {
+              id: 'me',
+              kind: 'nutrient',
+              nutrient: 'metabolizableEnergy',
+              measure: 'perHeadDay',
+              min: 999999999,
+            },
+            { id: 'intake', kind: 'intake', min: 2, max: 2, negotiable: false },
+          ).input,
+      )
+      if (answer.status !== 'infeasible') throw new Error(`It is ${answer.status}.`)
+      expect(answer.proposals[0]?.loosenings).toEqual([
+        { limitId: 'me', side: 'min', from: 999999999, to: expect.closeTo(6, 2) as number },
+      ])
+    },
+  )
+
   it('has no proposal where nothing may be loosened', async () => {
     expect(await solveMix(atLeast(150, false).input)).toMatchObject({ status: 'infeasible', proposals: [] })
   })

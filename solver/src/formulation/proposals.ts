@@ -120,10 +120,10 @@ async function propose(
 }
 
 /**
- * Draws each loosened limit whose denominator depends on the mix back in as far as the others allow, one after another:
- * the best quotient over all possible mixes, by the usual iteration for quotients of linear forms (maximise numerator −
- * L · denominator, set L to the quotient found, until it stays). Source: W. Dinkelbach, On Nonlinear Fractional
- * Programming, Management Science 13 (1967), from memory.
+ * Draws each loosened limit back in as far as the others allow, one after another: beside a limit set absurdly far off,
+ * anything within reach is equally near to the elastic program. The value is the best quotient over all possible mixes, by
+ * the usual iteration for quotients of linear forms (maximise numerator − L · denominator, set L to the quotient found,
+ * until it stays). Source: W. Dinkelbach, On Nonlinear Fractional Programming, Management Science 13 (1967), from memory.
  */
 async function drawIn(
   { solve, deadline }: SolveContext,
@@ -132,7 +132,6 @@ async function drawIn(
 ): Promise<void> {
   for (const entry of loosened) {
     const { side } = entry
-    if (side.movesSide) continue
     let program: LinearProgram = split.program
     for (const other of loosened) if (other !== entry) program = moveSide(program, other.side, other.to)
     const rows = program.rows.map((row, i) =>
@@ -148,8 +147,9 @@ async function drawIn(
       const outcome = await solve({ columns, rows })
       if (outcome.status !== 'optimal') break
       const amounts = outcome.columns.map(({ value }) => value)
-      if (valueOf(side.denominator, amounts) <= 0) break
-      const next = reached(side, amounts, bound)
+      const denominator = valueOf(side.denominator, amounts)
+      if (denominator <= 0) break
+      const next = Math.max(0, valueOf(side.numerator, amounts) / denominator)
       if (!(sign * (bound - next) > 1e-9 * bound)) break
       entry.to = next
     }
