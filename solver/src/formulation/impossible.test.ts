@@ -136,19 +136,16 @@ describe('a mix that is impossible', () => {
       const grain = feed('grain', 0.9, 0.2, { metabolizableEnergy: 3 })
       const hay = feed('hay', 0.9, 0.1, { metabolizableEnergy: 2 })
       const answer = await solveMix(
-        mix(basis)
-          .with(grain, hay)
-          .group({ intakeDryMatterKg: 2 })
-          .limit(
-            {
-              id: 'me',
-              kind: 'nutrient',
-              nutrient: 'metabolizableEnergy',
-              measure: 'perHeadDay',
-              min: 999999999,
-            },
-            { id: 'intake', kind: 'intake', min: 2, max: 2, negotiable: false },
-          ).input,
+        mix(basis).with(grain, hay).group({ intakeDryMatterKg: 2 }).limit(
+          {
+            id: 'me',
+            kind: 'nutrient',
+            nutrient: 'metabolizableEnergy',
+            measure: 'perHeadDay',
+            min: 999999999,
+          },
+          { id: 'intake', kind: 'intake', min: 2, max: 2, negotiable: false },
+        ).input,
       )
       if (answer.status !== 'infeasible') throw new Error(`It is ${answer.status}.`)
       expect(answer.proposals[0]?.loosenings).toEqual([
